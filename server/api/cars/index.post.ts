@@ -1,0 +1,14 @@
+import { teamQuery } from '../../../shared/schemas/common'
+import { carBody } from '../../../shared/schemas/setups'
+import { defineApiHandler } from '../../utils/api'
+
+export default defineApiHandler({
+  who: { action: 'cars.write', of: 'team' },
+  query: teamQuery,
+  body: carBody,
+  status: 201,
+  handler: async ({ db, teamId, body }) => {
+    const [row] = await db('cars').insert({ team_id: teamId, ...body }).returning<{ id: string }[]>('id')
+    return { id: row!.id }
+  },
+})

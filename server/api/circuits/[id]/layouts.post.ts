@@ -1,0 +1,16 @@
+import { layoutBody } from '../../../../shared/schemas/circuits'
+import { idParams } from '../../../../shared/schemas/common'
+import { defineApiHandler } from '../../../utils/api'
+
+export default defineApiHandler({
+  who: { action: 'circuits.write', of: 'circuit' },
+  params: idParams,
+  body: layoutBody,
+  status: 201,
+  handler: async ({ db, teamId, params, body }) => {
+    const [row] = await db('layouts')
+      .insert({ team_id: teamId, circuit_id: params.id, name: body.name, direction: body.direction })
+      .returning<{ id: string }[]>('id')
+    return { id: row!.id }
+  },
+})

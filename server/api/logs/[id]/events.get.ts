@@ -1,0 +1,32 @@
+import { createEventStream } from 'h3'
+import { idParams } from '../../../../shared/schemas/common'
+import type { LogProgress } from '../../../../shared/schemas/days'
+import { defineStreamHandler } from '../../../utils/api'
+import { readProgress } from '../../../utils/logs'
+import { followLog } from '../../../utils/progress'
+import { onShutdown } from '../../../utils/shutdown'
+
+/** How often the state is told without being asked: keeps proxies from closing, and mends a notification that was missed. */
+const BEAT_MS = 5000
+
+/** Progress of one log as server-sent events: how it stands now, then every step. */
+export default defineStreamHandler({
+  who: { action: 'read', of: 'log' },
+  params: idParams,
+  stream: async ({ event, params, transaction }) => {
+    const stream = createEventStream(event)
+    const push = (progress: LogProgress) => void stream.push(JSON.stringify(progress)).catch(() => undefined)
+    // Followed before the state is read, so that nothing falls between the two.
+    const unfollow = followLog(params.id, push)
+    const now = () => transaction(db => readProgress(db, params.id)).then(push, () => void stream.close())
+    const beat = setInterval(now, BEAT_MS)
+    const forget = onShutdown(() => void stream.close())
+    stream.onClosed(async () => {
+      clearInterval(beat)
+      unfollow()
+      forget()
+    })
+    void now()
+    return stream.send()
+  },
+})

@@ -1,0 +1,22 @@
+import { idParams } from '../../../../shared/schemas/common'
+import { defineApiHandler } from '../../../utils/api'
+import { readPath } from '../../../utils/log-work'
+import { ProblemError } from '../../../utils/problems'
+
+const MOST_POINTS = 6000
+
+/** The driven path of a log for drawing: every n-th sample, at most some thousand of them. */
+export default defineApiHandler({
+  who: { action: 'read', of: 'log' },
+  params: idParams,
+  handler: async ({ db, teamId, params }) => {
+    const log = await db('logs').where('id', params.id).first<{ status: string, gaps: { fromS: number, toS: number }[] }>('status', 'gaps')
+    if (log.status !== 'ready' && log.status !== 'no_lines') {
+      throw new ProblemError(409, 'Not read yet', 'The log has no trace before it has been read.')
+    }
+    const path = await readPath(db, teamId, params.id, log.gaps)
+    const step = Math.max(1, Math.ceil(path.timeS.length / MOST_POINTS))
+    const thin = (values: Float64Array, digits: number) => Array.from(values).filter((_, i) => i % step === 0).map(value => Number(value.toFixed(digits)))
+    return { timeS: thin(path.timeS, 3), latitudeDeg: thin(path.latitudeDeg, 7), longitudeDeg: thin(path.longitudeDeg, 7), gaps: path.gaps }
+  },
+})

@@ -1,0 +1,119 @@
+import { randomUUID } from 'node:crypto'
+import { defineEventHandler, getQuery, getRequestHeader, getRouterParams, setResponseHeader, setResponseStatus, type H3Event } from 'h3'
+import { z } from 'zod'
+import { findPlace, loadPerson, type Person, type Place, type Who } from './access'
+import { asNobody, asPerson, type Transaction } from './db/transactions'
+import { badInput, ProblemError, problemOf, signInNeeded } from './problems'
+import { readJson } from './read-json'
+
+type Parsed<S> = S extends z.ZodType ? z.output<S> : undefined
+
+interface Input<P, Q, B> {
+  event: H3Event
+  params: Parsed<P>
+  query: Parsed<Q>
+  body: Parsed<B>
+}
+
+interface Definition<P, Q, B, W extends Who, A> {
+  params?: P
+  query?: Q
+  body?: B
+  who: W
+  /** Status of a good answer; 200 when not said. */
+  status?: number
+  handler: (context: Input<P, Q, B> & { db: Transaction } & Asked<W>) => Promise<A>
+}
+
+type Asked<W> = W extends 'anyone' ? object : W extends 'person' ? { person: Person } : { person: Person } & Place
+
+interface StreamDefinition<P, Q, W extends Who> {
+  params?: P
+  query?: Q
+  who: W
+  /** Runs outside any transaction; `transaction` opens a short one as the person. */
+  stream: (context: Input<P, Q, undefined> & Asked<W> & { transaction: <T>(run: (db: Transaction) => Promise<T>) => Promise<T> }) => Promise<unknown>
+}
+
+/**
+ * The one way to make a route: who asks, is the input right, do one thing, answer. The handler runs in one short
+ * transaction as the person; errors are answered as problem details (RFC 9457).
+ */
+export function defineApiHandler<P extends z.ZodType | undefined, Q extends z.ZodType | undefined, B extends z.ZodType | undefined, W extends Who, A>(definition: Definition<P, Q, B, W, A>) {
+  return defineEventHandler(event => answer(event, async () => {
+    const input = await readInput(event, definition)
+    if (definition.body) {
+      guardOrigin(event)
+      input.body = parse('body', definition.body, await readJson(event))
+    }
+    else if (!['GET', 'HEAD'].includes(event.method)) {
+      guardOrigin(event)
+    }
+    const body = await inTransaction(event, definition.who, input, (db, asked) => definition.handler({ ...input, ...asked, db } as never))
+    setResponseStatus(event, definition.status ?? (body === undefined ? 204 : 200))
+    return body ?? null
+  }))
+}
+
+/** The same for uploads and server-sent events, which must not hold a transaction while they run. */
+export function defineStreamHandler<P extends z.ZodType | undefined, Q extends z.ZodType | undefined, W extends Exclude<Who, 'anyone'>>(definition: StreamDefinition<P, Q, W>) {
+  return defineEventHandler(event => answer(event, async () => {
+    if (event.method !== 'GET') guardOrigin(event)
+    const input = await readInput(event, definition)
+    const asked = await inTransaction(event, definition.who, input, async (_db, found) => found)
+    const { person } = asked as { person: Person }
+    return definition.stream({ ...input, ...asked, transaction: (run: (db: Transaction) => Promise<unknown>) => asPerson(person.id, run) } as never)
+  }))
+}
+
+async function readInput(event: H3Event, definition: { params?: z.ZodType, query?: z.ZodType }) {
+  return {
+    event,
+    params: definition.params ? parse('path', definition.params, getRouterParams(event)) : undefined,
+    query: definition.query ? parse('query', definition.query, getQuery(event)) : undefined,
+    body: undefined as unknown,
+  }
+}
+
+function parse(where: 'body' | 'query' | 'path', schema: z.ZodType, value: unknown): unknown {
+  const result = schema.safeParse(value)
+  if (!result.success) throw badInput(where, result.error)
+  return result.data
+}
+
+async function inTransaction<T>(event: H3Event, who: Who, input: { params: unknown, query: unknown }, run: (db: Transaction, asked: object) => Promise<T>): Promise<T> {
+  if (who === 'anyone') return asNobody(db => run(db, {}))
+  const session = await getUserSession(event)
+  const userId = session.user?.id
+  if (!userId) throw signInNeeded()
+  return asPerson(userId, async (db) => {
+    const person = await loadPerson(db, userId, session.epoch)
+    if (who === 'person') return run(db, { person })
+    const ids = { ...(input.query as { teamId?: string }), ...(input.params as { id?: string }) }
+    return run(db, { person, ...await findPlace(db, person, who, ids) })
+  })
+}
+
+/** A page of another site must not act with this person's cookie. */
+function guardOrigin(event: H3Event): void {
+  const site = getRequestHeader(event, 'sec-fetch-site')
+  if (site === 'cross-site' || site === 'same-site') {
+    throw new ProblemError(403, 'From another site', 'This request came from a page of another site and was not carried out.')
+  }
+}
+
+async function answer(event: H3Event, run: () => Promise<unknown>): Promise<unknown> {
+  try {
+    return await run()
+  }
+  catch (error) {
+    const requestId = randomUUID()
+    const known = problemOf(error)
+    if (!known) console.error(`[${requestId}] ${event.method} ${event.path}`, error)
+    const { problem } = known ?? new ProblemError(500, 'Something went wrong here', 'The fault is ours, not yours; nothing was changed. Try again, and if it stays, tell us the request id.')
+    if (event.node.res.headersSent) return undefined
+    setResponseStatus(event, problem.status)
+    setResponseHeader(event, 'content-type', 'application/problem+json')
+    return { ...problem, requestId }
+  }
+}

@@ -1,0 +1,100 @@
+import { randomUUID } from 'node:crypto'
+import type { DrivingDirection, CutLap, CutResult } from './laps/types'
+import { cutLaps } from './laps/lap'
+import { lapPath } from './laps/place'
+import { makePlane, toPlane } from './laps/project'
+import { matchLaps } from './laps/recut'
+import { readLines } from './circuits'
+import type { Transaction } from './db/transactions'
+
+export interface LogPath {
+  timeS: Float64Array
+  latitudeDeg: Float64Array
+  longitudeDeg: Float64Array
+  gaps: { fromS: number, toS: number }[]
+}
+
+export interface LogPart {
+  id: string
+  team_id: string
+  log_id: string
+  outing_id: string
+  layout_id: string
+}
+
+/** The part of a log with the layout it was driven on. */
+export function readParts(db: Transaction, where: { logId?: string, layoutId?: string }): Promise<LogPart[]> {
+  return db('log_parts as p').join('outings as o', 'o.id', 'p.outing_id')
+    .modify((query) => {
+      if (where.logId) query.where('p.log_id', where.logId)
+      if (where.layoutId) query.where('o.layout_id', where.layoutId)
+    })
+    .orderBy('p.id').select<LogPart[]>('p.id', 'p.team_id', 'p.log_id', 'p.outing_id', 'o.layout_id')
+}
+
+/**
+ * Cuts a part of a log at the lines of its layout and stores the laps. A lap that was there before keeps its identifier
+ * and its exclusion where the new one covers the same stretch of time. The layout is locked, so that lines which change
+ * at the same moment are seen either wholly or not at all.
+ * @returns how the log stands now
+ */
+export async function cutPart(db: Transaction, part: LogPart, path: LogPath): Promise<'ready' | 'no_lines'> {
+  const layout = await db('layouts').where('id', part.layout_id).forUpdate()
+    .first<{ direction: DrivingDirection | null, length_m: number | null }>('direction', 'length_m')
+  const lines = await readLines(db, part.layout_id)
+  const cut: CutResult = lines.length
+    ? cutLaps(path, lines, { direction: layout.direction })
+    : { laps: [], lines: [], warnings: [] }
+  await storeLaps(db, part, path, cut.laps)
+  await db('log_parts').where('id', part.id).update({ warnings: JSON.stringify(cut.warnings) })
+  if (layout.length_m === null) {
+    const lengthM = bestLapLength(path, lines[0]?.a, cut.laps)
+    if (lengthM !== null) await db('layouts').where('id', part.layout_id).update({ length_m: lengthM })
+  }
+  return lines.length ? 'ready' : 'no_lines'
+}
+
+async function storeLaps(db: Transaction, part: LogPart, path: LogPath, laps: readonly CutLap[]): Promise<void> {
+  const old = await db('laps').where({ team_id: part.team_id, log_part_id: part.id })
+    .select<{ id: string, startS: number, timeS: number, kind: string }[]>('id', 'start_s as startS', 'time_s as timeS', 'kind')
+  const ids = matchLaps(old, [...laps]).map(id => id ?? randomUUID())
+  await db('laps').where({ team_id: part.team_id, log_part_id: part.id }).whereNotIn('id', ids).delete()
+  if (!laps.length) return
+  await db('laps').insert(laps.map((lap, i) => ({
+    team_id: part.team_id,
+    id: ids[i],
+    outing_id: part.outing_id,
+    log_part_id: part.id,
+    number: lap.number,
+    kind: lap.kind,
+    start_s: lap.startS,
+    time_s: lap.timeS,
+    first_sample: Math.max(0, firstAfter(path.timeS, lap.startS) - 1),
+    last_sample: Math.min(path.timeS.length - 1, firstAfter(path.timeS, lap.startS + lap.timeS)),
+    flags: JSON.stringify(lap.flags),
+  }))).onConflict(['team_id', 'id']).merge(['outing_id', 'number', 'kind', 'start_s', 'time_s', 'first_sample', 'last_sample', 'flags'])
+  await db('lap_sectors').where('team_id', part.team_id).whereIn('lap_id', ids).delete()
+  const sectors = laps.flatMap((lap, i) => lap.sectorsS.map((time, j) => ({ team_id: part.team_id, lap_id: ids[i], ordinal: j + 1, time_s: time })))
+  if (sectors.length) await db('lap_sectors').insert(sectors)
+}
+
+/** Index of the first sample after an instant; the length when there is none. */
+function firstAfter(timeS: Float64Array, instantS: number): number {
+  let low = 0
+  let high = timeS.length
+  while (low < high) {
+    const middle = (low + high) >> 1
+    if (timeS[middle]! > instantS) high = middle
+    else low = middle + 1
+  }
+  return low
+}
+
+function bestLapLength(path: LogPath, origin: { latitudeDeg: number, longitudeDeg: number } | undefined, laps: readonly CutLap[]): number | null {
+  const timed = laps.filter(lap => lap.kind === 'timed' && !lap.flags.length)
+  if (!origin || !timed.length) return null
+  const best = timed.reduce((a, b) => b.timeS < a.timeS ? b : a)
+  const plane = makePlane(origin.latitudeDeg, origin.longitudeDeg)
+  const { xM, yM } = toPlane(plane, path.latitudeDeg, path.longitudeDeg)
+  return lapPath(path.timeS, xM, yM, best.startS, best.timeS).stationM.at(-1)!
+}

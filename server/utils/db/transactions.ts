@@ -1,0 +1,33 @@
+import type { Knex } from 'knex'
+import { pool } from './pool'
+
+export type Transaction = Knex.Transaction
+
+/**
+ * Runs queries as nobody: row-level security shows no row of any team. For sign-in and registration, which go through
+ * functions of the owner.
+ */
+export function asNobody<T>(run: (db: Transaction) => Promise<T>): Promise<T> {
+  return pool().transaction(run)
+}
+
+/** Runs queries as a person: row-level security shows the rows of their teams. Keep it short; never across a stream. */
+export function asPerson<T>(userId: string, run: (db: Transaction) => Promise<T>): Promise<T> {
+  return pool().transaction(async (db) => {
+    await db.raw('select set_config(\'lapwright.user_id\', ?, true)', [userId])
+    return run(db)
+  })
+}
+
+/** Runs queries of a job in the name of one team. */
+export function asTeam<T>(teamId: string, run: (db: Transaction) => Promise<T>): Promise<T> {
+  return pool().transaction(async (db) => {
+    await db.raw('select set_config(\'lapwright.team_id\', ?, true)', [teamId])
+    return run(db)
+  })
+}
+
+/** Holds the numbering of a parent's children until the transaction ends, so that two people never get one number. */
+export async function lockNumbers(db: Transaction, parentId: string): Promise<void> {
+  await db.raw('select pg_advisory_xact_lock(hashtextextended(?, 0))', [parentId])
+}

@@ -1,0 +1,65 @@
+import process from 'node:process'
+import PgBoss from 'pg-boss'
+import { databaseUrl } from './db/pool'
+import type { Transaction } from './db/transactions'
+
+/** The jobs of the worker. Each names its team, in whose name its queries run. */
+export interface Jobs {
+  'log-read': { teamId: string, logId: string }
+  'layout-cut': { teamId: string, layoutId: string }
+}
+export type JobName = keyof Jobs
+
+export const RETRY_LIMIT = 3
+
+const held = globalThis as typeof globalThis & { lapwrightJobs?: Promise<PgBoss> }
+
+/** The queue of this process. Its tables are made by the owner's migration, never here. */
+export function jobQueue(options: { supervise: boolean } = { supervise: false }): Promise<PgBoss> {
+  held.lapwrightJobs ??= startQueue(options.supervise)
+  return held.lapwrightJobs
+}
+
+async function startQueue(supervise: boolean): Promise<PgBoss> {
+  const boss = new PgBoss({
+    connectionString: databaseUrl(),
+    application_name: 'lapwright jobs',
+    max: 3,
+    migrate: false,
+    schedule: false,
+    supervise,
+    // How soon the job of a killed worker is found to have expired.
+    maintenanceIntervalSeconds: 10,
+  })
+  boss.on('error', error => console.error('job queue:', error.message))
+  await boss.start()
+  return boss
+}
+
+export async function stopJobQueue(): Promise<void> {
+  const running = held.lapwrightJobs
+  held.lapwrightJobs = undefined
+  if (running) await (await running).stop({ graceful: true, wait: true, timeout: 3000 })
+}
+
+/** Sends a job inside a transaction: with it the job comes into being, or with it the job is rolled back. */
+export async function sendJob<N extends JobName>(db: Transaction, name: N, data: Jobs[N]): Promise<void> {
+  const boss = await jobQueue()
+  const connection = await db.client.acquireConnection() as { query: (text: string, values: unknown[]) => Promise<{ rows: unknown[] }> }
+  await boss.send(name, data, { db: { executeSql: (text, values) => connection.query(text, values) } })
+}
+
+/** Takes jobs off the queue one at a time until the process ends. `lastTry` is true when a failure is final. */
+export async function workOn<N extends JobName>(name: N, run: (data: Jobs[N], lastTry: boolean) => Promise<void>): Promise<void> {
+  const boss = await jobQueue({ supervise: true })
+  await boss.work<Jobs[N]>(name, { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: 0.5 }, async ([job]) => {
+    if (!job) return
+    try {
+      await run(job.data, job.retryCount >= RETRY_LIMIT)
+    }
+    catch (error) {
+      console.error(`job ${name} ${job.id}, try ${job.retryCount + 1} (process ${process.pid}):`, error)
+      throw error
+    }
+  })
+}

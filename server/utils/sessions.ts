@@ -1,0 +1,11 @@
+import process from 'node:process'
+import type { H3Event } from 'h3'
+
+/**
+ * Starts (or goes on with) the session of a person. The cookie is marked secure when people reach the server by https;
+ * a browser would not send it back over plain http on loopback.
+ */
+export async function startSession(event: H3Event, userId: string, epoch: number): Promise<void> {
+  const secure = (process.env.LAPWRIGHT_PUBLIC_URL ?? '').startsWith('https:')
+  await replaceUserSession(event, { user: { id: userId }, epoch }, { cookie: { secure, sameSite: 'lax', httpOnly: true } })
+}

@@ -1,0 +1,118 @@
+import { z } from 'zod'
+import { idSchema, nameSchema, notesSchema } from './common'
+
+export const DIRECTIONS = ['clockwise', 'anticlockwise'] as const
+
+const timeZoneSchema = z.string().max(60).refine(isTimeZone, 'a time zone such as Europe/London')
+
+function isTimeZone(name: string): boolean {
+  try {
+    new Intl.DateTimeFormat('en', { timeZone: name })
+    return true
+  }
+  catch {
+    return false
+  }
+}
+
+export const circuitBody = z.object({
+  name: nameSchema,
+  timeZone: timeZoneSchema,
+  notes: notesSchema,
+})
+export type CircuitBody = z.infer<typeof circuitBody>
+
+export const layoutBody = z.object({
+  name: nameSchema,
+  /** null: as most laps of a log go round. */
+  direction: z.enum(DIRECTIONS).nullable().default(null),
+})
+export type LayoutBody = z.infer<typeof layoutBody>
+
+const pointSchema = z.object({
+  latitudeDeg: z.number().min(-90).max(90),
+  longitudeDeg: z.number().min(-180).max(180),
+})
+
+export const timingLineSchema = z.object({
+  kind: z.enum(['start_finish', 'sector']),
+  /** 0 for the start/finish line, 1..n for sector lines in driving order. */
+  ordinal: z.int().min(0).max(20),
+  a: pointSchema,
+  b: pointSchema,
+}).refine(line => (line.kind === 'start_finish') === (line.ordinal === 0), { path: ['ordinal'], message: 'the start/finish line has ordinal 0, sector lines count from 1' })
+  .refine(line => line.a.latitudeDeg !== line.b.latitudeDeg || line.a.longitudeDeg !== line.b.longitudeDeg, { path: ['b'], message: 'the two ends of a line cannot be the same point' })
+
+const lineSet = z.array(timingLineSchema).max(21).refine(
+  lines => lines.map(line => line.ordinal).sort((a, b) => a - b).every((ordinal, i) => ordinal === i),
+  'one start/finish line, and sector lines numbered 1, 2, 3 without a gap',
+)
+
+/** All lines of a layout at once, so that a set is never half changed. */
+export const linesBody = z.object({
+  /** `linesVersion` of the layout as it was read; when somebody else has changed the lines since, nothing is saved. */
+  basedOnVersion: z.int().min(0),
+  lines: lineSet,
+})
+export type LinesBody = z.infer<typeof linesBody>
+
+export const savedLineSchema = z.object({
+  id: idSchema,
+  kind: z.enum(['start_finish', 'sector']),
+  ordinal: z.int(),
+  a: pointSchema,
+  b: pointSchema,
+})
+export type SavedLine = z.infer<typeof savedLineSchema>
+
+export const layoutSchema = z.object({
+  id: idSchema,
+  teamId: idSchema,
+  circuitId: idSchema,
+  circuitName: z.string(),
+  name: z.string(),
+  direction: z.enum(DIRECTIONS).nullable(),
+  /** Length of the best lap's path so far, metres; null before the first lap. */
+  lengthM: z.number().nullable(),
+  /** Goes up with every change of the lines. */
+  linesVersion: z.int(),
+  lines: z.array(savedLineSchema),
+})
+export type Layout = z.infer<typeof layoutSchema>
+
+export const circuitSchema = z.object({
+  id: idSchema,
+  teamId: idSchema,
+  name: z.string(),
+  timeZone: z.string(),
+  notes: z.string(),
+  layouts: z.array(layoutSchema.pick({ id: true, name: true, direction: true, lengthM: true }).extend({ lineCount: z.int() })),
+})
+export type Circuit = z.infer<typeof circuitSchema>
+
+/** Logs driven on a layout, for choosing the trace on which its lines are drawn. */
+export const layoutLogSchema = z.object({
+  id: idSchema,
+  fileName: z.string(),
+  outingId: idSchema,
+  outingNumber: z.int(),
+  date: z.string(),
+  status: z.string(),
+})
+export type LayoutLog = z.infer<typeof layoutLogSchema>
+
+/** Lines to be tried on a log; without a start/finish line there is nothing to try. */
+export const lineTrialBody = z.object({
+  logId: idSchema,
+  lines: lineSet.refine(lines => lines.length > 0, 'a start/finish line is needed first'),
+})
+export type LineTrialBody = z.infer<typeof lineTrialBody>
+
+/** What a set of lines would do to a log, worked out without storing anything. */
+export const lineTrialSchema = z.object({
+  timedLaps: z.int(),
+  bestS: z.number().nullable(),
+  lines: z.array(z.object({ ordinal: z.int(), crossed: z.int(), ignored: z.int(), offSquareDeg: z.number().nullable() })),
+  warnings: z.array(z.object({ code: z.string(), message: z.string() })),
+})
+export type LineTrial = z.infer<typeof lineTrialSchema>
