@@ -47,6 +47,8 @@ export default defineNuxtConfig({
     xssValidator: false,
     rateLimiter: false,
     requestSizeLimiter: false,
+    // Nobody else's pages have business here.
+    corsHandler: false,
     headers: {
       crossOriginEmbedderPolicy: false,
       contentSecurityPolicy: {
