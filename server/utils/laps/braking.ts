@@ -41,7 +41,8 @@ function meanDeceleration(timeS: ArrayLike<number>, longitudinalMps2: ArrayLike<
     let sum = raw[i]!
     let count = 1
     // Pairs on both sides only, so that the mean does not move a ramp at the ends.
-    for (let k = 1; i - k >= 0 && i + k < t.length && Math.max(t[i]! - t[i - k]!, t[i + k]! - t[i]!) <= HALF_MEAN_S * 1.001; k++) {
+    for (let k = 1; i - k >= 0 && i + k < t.length; k++) {
+      if (Math.max(t[i]! - t[i - k]!, t[i + k]! - t[i]!) > HALF_MEAN_S * 1.001) break
       sum += raw[i - k]! + raw[i + k]!
       count += 2
     }
@@ -125,7 +126,7 @@ export function findBrakings(
   if (stationM.length !== n || speedMps.length !== n || longitudinalMps2.length !== n) {
     throw new LapsError('length_mismatch', 'station, time, speed and acceleration differ in length')
   }
-  const at = (values: ArrayLike<number>, instantS: number): number => interpolate(timeS, values, [instantS], Infinity)[0]!
+  const at = (values: ArrayLike<number>, atS: number): number => interpolate(timeS, values, [atS], Infinity)[0]!
   const { t, d } = meanDeceleration(timeS, longitudinalMps2)
   return zones(t, d).map(([from, to]) => {
     const own = ownDeceleration(d, from, to)

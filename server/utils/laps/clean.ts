@@ -18,7 +18,8 @@ const TIME_ROUNDING_S = 1e-6
  * time, rows that repeat a time (the first stands) and single rows that step back are left out; fixes that are off the
  * earth, 0, 0, repeated or impossible are replaced by interpolation between their neighbours, never held; rows before
  * the first fix and after the last are left out, with time zero staying at the first row of the file. All of it is
- * reported with the line, apart from what the reader had to report. Other channels are taken over as they are, NaN where missing; those without any value go.
+ * reported with the line, apart from what the reader had to report. Other channels are taken over as they are, NaN
+ * where missing; those without any value go.
  * @param read as it comes from the reader; it is not changed
  * @throws {LapsError} 'time_runs_back' with the line when more than 1 % of the rows (and more than one) step back,
  *   'no_time' | 'no_position' when none is left, 'too_short' below 10 usable samples. O(n).

@@ -86,7 +86,8 @@ function placed(lap: LapTrace, plane: Plane): PlacedLap {
     const channel = lap.channels[name]
     if (!channel) return null
     const values = pick(channel)
-    return known.some((i, k) => lap.timeS[i]! >= lap.startS && lap.timeS[i]! <= endS && Number.isFinite(values[k]!)) ? values : null
+    const within = (i: number) => lap.timeS[i]! >= lap.startS && lap.timeS[i]! <= endS
+    return known.some((i, k) => within(i) && Number.isFinite(values[k]!)) ? values : null
   }
   const timeS = pick(lap.timeS)
   const x = pick(xM)

@@ -20,13 +20,19 @@ export interface Crossing {
   sample: number
 }
 
-/** How far the way over a gap may differ from what speed and heading at both its ends say: 2 m and a quarter of the way. */
+/**
+ * How far the way over a gap may differ from what speed and heading at both its ends say: 2 m and a quarter of the
+ * way.
+ */
 const GAP_SLACK_M = 2
 const GAP_SLACK = 0.25
 
 const DEG = 180 / Math.PI
 
-/** The one root of a cubic between two places where its sign differs: Newton's steps, halved where they leave the bracket. */
+/**
+ * The one root of a cubic between two places where its sign differs: Newton's steps, halved where they leave the
+ * bracket.
+ */
 function rootBetween(cubic: Cubic, from: number, to: number): number {
   const rising = cubicAt(cubic, from) < 0
   let low = from
@@ -35,7 +41,7 @@ function rootBetween(cubic: Cubic, from: number, to: number): number {
   for (let step = 0; step < 80 && high - low > 1e-16; step++) {
     const value = cubicAt(cubic, u)
     if (value === 0) return u
-    if (value < 0 === rising) low = u
+    if ((value < 0) === rising) low = u
     else high = u
     const newton = u - value / cubicSlope(cubic, u)
     const next = newton > low && newton < high ? newton : (low + high) / 2
@@ -149,10 +155,10 @@ function withoutTouches(crossings: Crossing[]): Crossing[] {
  * The instants at which a path passes a line, on the line itself and never on its extension.
  *
  * Between samples the path is the cubic Hermite curve through position and velocity, and the instant is the root of its
- * distance from the line: exact for constant acceleration on a straight. With velocities from three-point differences the
- * curve is off by at most 0.016 h^3 times the third derivative (25 Hz, 40 m/s, 0.5 rad/s: 0.01 mm; 1 Hz, 20 m/s,
- * 0.4 rad/s: 5 cm), and by about a h^2 / 16 where an acceleration a sets in (25 Hz, 1 g: 1 mm; 1 Hz: 0.6 m).
- * A path that stands on the line gives as many crossings as its noise makes; what counts is decided elsewhere.
+ * distance from the line: exact for constant acceleration on a straight. With velocities from three-point differences
+ * the curve is off by at most 0.016 h^3 times the third derivative (25 Hz, 40 m/s, 0.5 rad/s: 0.01 mm; 1 Hz, 20 m/s,
+ * 0.4 rad/s: 5 cm), and by about a h^2 / 16 where an acceleration a sets in (25 Hz, 1 g: 1 mm; 1 Hz: 0.6 m). A path
+ * that stands on the line gives as many crossings as its noise makes; what counts is decided elsewhere.
  *
  * @param timeS strictly rising, length n, seconds
  * @param xM length n, metres, no missing values
@@ -183,7 +189,9 @@ export function findCrossings(
     lengthM,
   }
   const marks = gapAfter ?? new Uint8Array(timeS.length)
-  const path = { timeS, xM, yM, vx: vxMps ?? threePointSlope(timeS, xM, marks), vy: vyMps ?? threePointSlope(timeS, yM, marks) }
+  const vx = vxMps ?? threePointSlope(timeS, xM, marks)
+  const vy = vyMps ?? threePointSlope(timeS, yM, marks)
+  const path = { timeS, xM, yM, vx, vy }
   const crossings: Crossing[] = []
   for (let i = 0; i + 1 < timeS.length; i++) crossStretch(path, i, marks[i] === 1, frame, crossings)
   return withoutTouches(crossings)

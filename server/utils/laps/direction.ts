@@ -19,7 +19,13 @@ export interface StartSense {
  * @param to   last sample of the loop, closed by the straight line back to the first
  * @returns +1 anticlockwise, -1 clockwise, 0 where it is about as much of the one as of the other. O(to - from).
  */
-export function loopSense(xM: ArrayLike<number>, yM: ArrayLike<number>, from: number, to: number, lengthM: number): -1 | 0 | 1 {
+export function loopSense(
+  xM: ArrayLike<number>,
+  yM: ArrayLike<number>,
+  from: number,
+  to: number,
+  lengthM: number,
+): -1 | 0 | 1 {
   let twiceArea = 0
   for (let i = from; i <= to; i++) {
     const j = i === to ? from : i + 1
@@ -31,8 +37,8 @@ export function loopSense(xM: ArrayLike<number>, yM: ArrayLike<number>, from: nu
 }
 
 /**
- * The sense in which the start/finish line has to be crossed. Without a direction it is the usual one. With one it is the
- * sense whose loops go that way round (at least half of them; loops without a clear way round fit both); a log
+ * The sense in which the start/finish line has to be crossed. Without a direction it is the usual one. With one it is
+ * the sense whose loops go that way round (at least half of them; loops without a clear way round fit both); a log
  * without a complete lap is believed.
  * @param crossings of the start/finish line, in order of time
  * @param path the samples that the crossings' `sample` counts

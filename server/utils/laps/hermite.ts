@@ -38,13 +38,17 @@ function slopeOfThree(t: ArrayLike<number>, v: ArrayLike<number>, i: number, j: 
 }
 
 /**
- * Velocity at every sample: the slope of the parabola through the sample and its two neighbours, whatever their spacing.
- * At the ends and at the edges of a gap the three lie on the near side, for what is beyond says nothing about the
- * velocity here; where there are fewer than three, the straight line through two.
+ * Velocity at every sample: the slope of the parabola through the sample and its two neighbours, whatever their
+ * spacing. At the ends and at the edges of a gap the three lie on the near side, for what is beyond says nothing
+ * about the velocity here; where there are fewer than three, the straight line through two.
  * @param gapAfter as `gapAfterSample` gives it
  * @returns per second, length n. O(n).
  */
-export function threePointSlope(timeS: ArrayLike<number>, values: ArrayLike<number>, gapAfter: Uint8Array): Float64Array {
+export function threePointSlope(
+  timeS: ArrayLike<number>,
+  values: ArrayLike<number>,
+  gapAfter: Uint8Array,
+): Float64Array {
   const n = timeS.length
   const slope = new Float64Array(n)
   for (let i = 0; i < n; i++) {

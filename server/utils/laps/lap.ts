@@ -48,7 +48,9 @@ function planeAt(line: TimingLine): Plane {
   return makePlane((a.latitudeDeg + b.latitudeDeg) / 2, a.longitudeDeg + shortTurn / 2)
 }
 
-/** The log in the plane, without the samples that have no position of their own: missing ones, and those inside a gap. */
+/**
+ * The log in the plane, without the samples that have no position of their own: missing ones, and those inside a gap.
+ */
 function pathOf(log: CutLog, plane: Plane): LogPath {
   const { xM, yM } = toPlane(plane, log.latitudeDeg, log.longitudeDeg)
   const gaps = [...log.gaps].sort((p, q) => p.fromS - q.fromS)
@@ -108,7 +110,8 @@ function doubtfulGaps({ timeS, xM, yM, vxMps, vyMps, gapAfter }: LogPath, line: 
     const dx = xM[j]! - xM[i]!
     const dy = yM[j]! - yM[i]!
     if (gapAgrees(dx, dy, vxMps[i]! * h, vyMps[i]! * h, vxMps[j]! * h, vyMps[j]! * h)) continue
-    const wayM = Math.max(Math.hypot(dx, dy), h * Math.hypot(vxMps[i]!, vyMps[i]!), h * Math.hypot(vxMps[j]!, vyMps[j]!))
+    const fastestMps = Math.max(Math.hypot(vxMps[i]!, vyMps[i]!), Math.hypot(vxMps[j]!, vyMps[j]!))
+    const wayM = Math.max(Math.hypot(dx, dy), h * fastestMps)
     const overLineM = Math.hypot(lineX - xM[i]!, lineY - yM[i]!) + Math.hypot(xM[j]! - lineX, yM[j]! - lineY)
     if (overLineM <= GAP_REACH * wayM + lengthM) doubtful.push({ fromS: timeS[i]!, toS: timeS[j]! })
   }
@@ -121,11 +124,19 @@ function sectorUse(path: LogPath, line: TimingLine, plane: Plane, counts: boolea
   const all = crossingsOf(path, drawn)
   const usual = usualSense(passings(all))
   const ownLapM = Number.isNaN(lapM) ? lapDistance(all.filter(crossing => crossing.sense === usual)) : lapM
-  return { line, all, counting: counts ? countingCrossings(all, usual, ownLapM) : [], doubtful: doubtfulGaps(path, drawn) }
+  const counting = counts ? countingCrossings(all, usual, ownLapM) : []
+  return { line, all, counting, doubtful: doubtfulGaps(path, drawn) }
 }
 
-/** Sector times of one lap: each line counts at its first crossing after the one before it, null on both sides of a miss. */
-function sectorTimes(start: Pass, end: Pass, sectors: readonly LineUse[]): { sectorsS: (number | null)[], used: Pass[] } {
+/**
+ * Sector times of one lap: each line counts at its first crossing after the one before it, null on both sides of a
+ * miss.
+ */
+function sectorTimes(
+  start: Pass,
+  end: Pass,
+  sectors: readonly LineUse[],
+): { sectorsS: CutLap['sectorsS'], used: Pass[] } {
   const instants: (number | null)[] = [start.timeS]
   const used = [start, end]
   let after = start.timeS
@@ -149,40 +160,45 @@ function lapsBetween(firstS: number, lastS: number, start: LineUse, sectors: rea
   const starts = start.counting
   const doubtful = [start, ...sectors].flatMap(use => use.doubtful)
   const laps: CutLap[] = []
-  const add = (number: number, kind: CutLap['kind'], startS: number, endS: number, sectorsS: (number | null)[], used: Pass[]) => {
+  let timed = 0
+  const add = (kind: CutLap['kind'], startS: number, endS: number, sectorsS: CutLap['sectorsS'], used: Pass[]) => {
     const unsure = used.some(pass => pass.gap !== 'none') || doubtful.some(gap => gap.toS > startS && gap.fromS < endS)
     const flags = [...(unsure ? ['gap_at_line'] : []), ...(sectorsS.includes(null) ? ['missed_sector'] : [])]
+    const number = { out: 0, timed: timed + 1, in: timed + 1 }[kind]
+    if (kind === 'timed') timed++
     laps.push({ number, kind, startS, timeS: endS - startS, sectorsS, flags })
   }
   const first = starts[0]
   const last = starts.at(-1)
   if (!first || !last) {
-    add(0, 'out', firstS, lastS, [], [])
+    add('out', firstS, lastS, [], [])
     return laps
   }
-  if (first.timeS > firstS) add(0, 'out', firstS, first.timeS, [], [first])
+  if (first.timeS > firstS) add('out', firstS, first.timeS, [], [first])
   for (let k = 1; k < starts.length; k++) {
     const from = starts[k - 1]!
     const to = starts[k]!
     const { sectorsS, used } = sectorTimes(from, to, sectors)
-    add(k, 'timed', from.timeS, to.timeS, sectorsS, used)
+    add('timed', from.timeS, to.timeS, sectorsS, used)
   }
-  if (lastS > last.timeS) add(starts.length, 'in', last.timeS, lastS, [], [last])
+  if (lastS > last.timeS) add('in', last.timeS, lastS, [], [last])
   return laps
 }
 
 /**
  * Cut a log into laps at its timing lines.
  *
- * The plane touches the earth at the middle of the start/finish line. A crossing counts in the sense in which the line is
- * usually passed, or in which loops go the way round that is asked for. Crossing the same place again before a third
- * of a lap (by distance, against the median lap of this log) does not count: the first stands. A line that cuts a second
- * straight counts where the car passes nearest to its middle. How the ends of a line are named changes nothing.
+ * The plane touches the earth at the middle of the start/finish line. A crossing counts in the sense in which the
+ * line is usually passed, or in which loops go the way round that is asked for. Crossing the same place again before
+ * a third of a lap (by distance, against the median lap of this log) does not count: the first stands. A line that
+ * cuts a second straight counts where the car passes nearest to its middle. How the ends of a line are named changes
+ * nothing.
  *
- * Laps follow one another without a hole from the first sample to the last; an out or in lap of no duration is left out.
- * Sector times are differences of unrounded instants and add up to the lap time. A lap is flagged 'gap_at_line' when one
- * of its crossings fell into a gap, or when it holds a gap whose edges disagree in speed or heading and in which the car
- * may have crossed a line (such a crossing is not used), 'missed_sector' when a sector line was not crossed in order.
+ * Laps follow one another without a hole from the first sample to the last; an out or in lap of no duration is left
+ * out. Sector times are differences of unrounded instants and add up to the lap time. A lap is flagged 'gap_at_line'
+ * when one of its crossings fell into a gap, or when it holds a gap whose edges disagree in speed or heading and in
+ * which the car may have crossed a line (such a crossing is not used), 'missed_sector' when a sector line was not
+ * crossed in order.
  *
  * @param log     see CutLog; positions float64 as stored, so that cutting again is equal bit for bit
  * @param lines   one start/finish line and any number of sector lines, in any order

@@ -24,9 +24,9 @@ export interface Motion {
 export interface QuadraticWeights { value: Float64Array, slope: Float64Array, second: Float64Array }
 
 /**
- * The weights with which samples at the given offsets add up to the value, slope and second derivative at offset zero of
- * the parabola that fits them best (least squares). On even samples these are the coefficients of Savitzky and Golay for
- * degree 2; here the samples may lie anywhere.
+ * The weights with which samples at the given offsets add up to the value, slope and second derivative at offset zero
+ * of the parabola that fits them best (least squares). On even samples these are the coefficients of Savitzky and
+ * Golay for degree 2; here the samples may lie anywhere.
  * @param offsets at least three different ones, in any unit (the slope is per that unit)
  * @see A. Savitzky, M. J. E. Golay, Anal. Chem. 36 (1964), tables I-VIII. O(n).
  */
@@ -63,6 +63,8 @@ export function quadraticWeights(offsets: ArrayLike<number>): QuadraticWeights {
   return weights
 }
 
+interface Derivatives { slope: Float64Array, second: Float64Array }
+
 /** Which samples a fit at sample i rests on: those within the window, at least three, the nearest in time first. */
 function windowAround(timeS: ArrayLike<number>, usable: ArrayLike<number>, i: number, out: number[]): void {
   out.length = 0
@@ -84,10 +86,13 @@ function windowAround(timeS: ArrayLike<number>, usable: ArrayLike<number>, i: nu
   }
 }
 
-/** Slope and second derivative of columns that miss the same samples; NaN there, and where fewer than three are known. */
-function derivatives(timeS: ArrayLike<number>, columns: ArrayLike<number>[]): { slope: Float64Array, second: Float64Array }[] {
+/**
+ * Slope and second derivative of columns that miss the same samples; NaN there, and where fewer than three are known.
+ */
+function derivatives(timeS: ArrayLike<number>, columns: ArrayLike<number>[]): Derivatives[] {
   const n = timeS.length
-  const results = columns.map(() => ({ slope: new Float64Array(n).fill(Number.NaN), second: new Float64Array(n).fill(Number.NaN) }))
+  const unknown = () => new Float64Array(n).fill(Number.NaN)
+  const results = columns.map(() => ({ slope: unknown(), second: unknown() }))
   const used: number[] = []
   for (let i = 0; i < n; i++) {
     windowAround(timeS, columns[0]!, i, used)
@@ -108,7 +113,12 @@ function derivatives(timeS: ArrayLike<number>, columns: ArrayLike<number>[]): { 
 }
 
 /** Path length by the trapezoid rule over speed; where a speed is missing, the straight line between the positions. */
-function driven(timeS: ArrayLike<number>, xM: ArrayLike<number>, yM: ArrayLike<number>, speedMps: Float64Array): Float64Array {
+function driven(
+  timeS: ArrayLike<number>,
+  xM: ArrayLike<number>,
+  yM: ArrayLike<number>,
+  speedMps: Float64Array,
+): Float64Array {
   const distanceM = new Float64Array(timeS.length)
   for (let i = 1; i < timeS.length; i++) {
     const step = (speedMps[i]! + speedMps[i - 1]!) / 2 * (timeS[i]! - timeS[i - 1]!)
@@ -124,8 +134,8 @@ function driven(timeS: ArrayLike<number>, xM: ArrayLike<number>, yM: ArrayLike<n
  *
  * At every sample a parabola is fitted to the samples within 0.25 s either way (to the three nearest where there are
  * fewer), and its derivatives are taken: exact for constant acceleration on a straight; on a circle driven at w rad/s
- * short by about (w h)^2 / 10 for speed and (w h)^2 / 14 for the second derivative, with h the half window (at 25 Hz and
- * 1 rad/s less than 1 %; at 1 Hz h is 1 s). At ends and gaps the window is one-sided and the noise greater.
+ * short by about (w h)^2 / 10 for speed and (w h)^2 / 14 for the second derivative, with h the half window (at 25 Hz
+ * and 1 rad/s less than 1 %; at 1 Hz h is 1 s). At ends and gaps the window is one-sided and the noise greater.
  *
  * Logged speed (the receiver's own) is used as it is where given. Curvature = (x'y'' - y'x'') / (x'^2 + y'^2)^1.5,
  * lateral acceleration = v^2 times curvature, longitudinal acceleration = the fitted slope of the speed, so that a
@@ -135,7 +145,8 @@ function driven(timeS: ArrayLike<number>, xM: ArrayLike<number>, yM: ArrayLike<n
  * @param xM length n, metres, NaN = missing
  * @param yM length n, metres, missing where xM is
  * @param speedMps length n, m/s, NaN = missing, or null where none was logged
- * @returns arrays of length n; NaN where the position (for longitudinal: the speed) is missing or fewer than three are known
+ * @returns arrays of length n; NaN where the position (for longitudinal: the speed) is missing or fewer than three
+ *   are known
  * @throws {LapsError} 'length_mismatch'
  * @see Savitzky and Golay (1964), as `quadraticWeights`. O(n k), k samples in the window.
  */
@@ -149,7 +160,7 @@ export function deriveMotion(
   if (xM.length !== n || yM.length !== n || (speedMps && speedMps.length !== n)) {
     throw new LapsError('length_mismatch', 'time, position and speed differ in length')
   }
-  const [x, y] = derivatives(timeS, [xM, yM]) as [{ slope: Float64Array, second: Float64Array }, { slope: Float64Array, second: Float64Array }]
+  const [x, y] = derivatives(timeS, [xM, yM]) as [Derivatives, Derivatives]
   const speed = speedMps ? Float64Array.from(speedMps) : new Float64Array(n)
   const headingRad = new Float64Array(n)
   const curvature1pm = new Float64Array(n)
@@ -165,5 +176,6 @@ export function deriveMotion(
     lateralMps2[i] = crawling ? 0 : speed[i]! ** 2 * curvature1pm[i]!
   }
   const longitudinalMps2 = derivatives(timeS, [speed])[0]!.slope
-  return { speedMps: speed, headingRad, curvature1pm, longitudinalMps2, lateralMps2, distanceM: driven(timeS, xM, yM, speed) }
+  const distanceM = driven(timeS, xM, yM, speed)
+  return { speedMps: speed, headingRad, curvature1pm, longitudinalMps2, lateralMps2, distanceM }
 }

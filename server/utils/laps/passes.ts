@@ -28,7 +28,10 @@ const WITHIN_LAP = 0.95
 /** Steps shorter than this are a standing car's noise. */
 const ODOMETER_STEP_M = 2
 
-/** Distance driven until each sample, metres, in steps of at least 2 m so that a standing car does not gather any. O(n). */
+/**
+ * Distance driven until each sample, metres, in steps of at least 2 m so that a standing car does not gather any.
+ * O(n).
+ */
 export function odometer(xM: ArrayLike<number>, yM: ArrayLike<number>): Float64Array {
   const distanceM = new Float64Array(xM.length)
   let total = 0

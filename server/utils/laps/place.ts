@@ -9,7 +9,9 @@ const SEARCH_BACK_M = 5
 const SEARCH_AHEAD_M = 10
 /** Further than this from the reference the car is off the track, and the search widens as it drives on. */
 const LOST_M = 25
-/** How far ahead it is looked for then, for each metre that it has driven since (a short cut saves no more than this). */
+/**
+ * How far ahead it is looked for then, for each metre that it has driven since (a short cut saves no more than this).
+ */
 const LOST_AHEAD = 3
 
 /** A lap's way from line to line, in points no more than 2 m apart. */
@@ -76,8 +78,10 @@ export function lapPath(
   return { timeS: Float64Array.from(t), xM: Float64Array.from(x), yM: Float64Array.from(y), stationM }
 }
 
+interface Foot { stationM: number, awayM: number }
+
 /** Foot of the perpendicular from (x, y) on the reference between two stations: its station and how far it is. */
-function footWithin(reference: LapPath, x: number, y: number, fromM: number, toM: number): { stationM: number, awayM: number } {
+function footWithin(reference: LapPath, x: number, y: number, fromM: number, toM: number): Foot {
   const { xM, yM, stationM } = reference
   let best = Infinity
   let at = fromM
@@ -99,10 +103,10 @@ function footWithin(reference: LapPath, x: number, y: number, fromM: number, toM
 
 /**
  * Station of every point of a lap on the path of another: the foot of its perpendicular, looked for only near its
- * predecessor's (5 m back to 10 m more than the car has driven since), so that a neighbouring straight cannot be mistaken.
- * A car further than 25 m from the reference is off the track: its station stands still, and the search reaches ahead by
- * three times the distance that it has driven since, so that it finds back. Station never falls: where the foot goes back
- * it stands still too.
+ * predecessor's (5 m back to 10 m more than the car has driven since), so that a neighbouring straight cannot be
+ * mistaken. A car further than 25 m from the reference is off the track: its station stands still, and the search
+ * reaches ahead by three times the distance that it has driven since, so that it finds back. Station never falls:
+ * where the foot goes back it stands still too.
  *
  * @param reference path of the lap along which station is measured
  * @param lap       path of the lap to be placed

@@ -96,7 +96,8 @@ export function toPlane(
 /**
  * Metres in the plane back to degrees: the point of the ellipsoid that lies under or over (x, y) along the origin's
  * vertical. Inverse of `toPlane` to about a micrometre within 5 km.
- * @returns longitude within -180 (included) and 180; NaN where a coordinate is missing or beyond the earth's edge. O(1).
+ * @returns longitude within -180 (included) and 180; NaN where a coordinate is missing or beyond the earth's edge.
+ *   O(1).
  */
 export function toDegrees(plane: Plane, xM: number, yM: number): { latitudeDeg: number, longitudeDeg: number } {
   const { sinLatitude: sin, cosLatitude: cos, axisM, heightM } = plane

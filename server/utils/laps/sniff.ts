@@ -127,7 +127,8 @@ function findShape({ lines, width, mark }: Table): Shape {
 
 /** Columns that hold numbers or times in at least four of five filled cells of the lowest third of the lines. */
 function numericColumns(lines: readonly Line[], width: number, mark: DecimalMark): number[] {
-  const lower = lines.slice(-Math.ceil(lines.length / 3)).filter(({ cells }) => cells.length === width).slice(0, MOST_ROWS)
+  const third = lines.slice(-Math.ceil(lines.length / 3))
+  const lower = third.filter(({ cells }) => cells.length === width).slice(0, MOST_ROWS)
   return Array.from({ length: width }, (_, i) => i).filter((i) => {
     const filled = lower.filter(({ cells }) => !isMissing(cells[i]!))
     return filled.length > 0 && filled.filter(({ cells }) => isValue(cells[i]!, mark)).length >= 0.8 * filled.length

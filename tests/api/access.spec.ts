@@ -1,0 +1,142 @@
+import { readdirSync } from 'node:fs'
+import { fileURLToPath } from 'node:url'
+import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import type { Knex } from 'knex'
+import { emptySheet } from '../../shared/schemas/setups'
+import { makeClient, type Client } from '../../seeds/client'
+import { addMember, connect } from '../support/database'
+import { baseUrl, fixture, fixtureLines, garage, lapsOf, register, saveLines, uploadAndRead, type Garage } from '../support/team'
+
+/** Who asks. `other` is signed in and the owner of another team. */
+const ASKERS = ['nobody', 'other', 'coach', 'crew', 'driver', 'owner'] as const
+type Asker = (typeof ASKERS)[number]
+
+interface Case {
+  path: (of: Team) => string
+  body?: (of: Team) => unknown
+  /** Status by asker; `yes` is any 2xx. */
+  expected: Record<Asker, number | 'yes'>
+}
+
+interface Team extends Garage { logId: string, lapIds: [string, string] }
+
+const ALL = { nobody: 'yes', other: 'yes', coach: 'yes', crew: 'yes', driver: 'yes', owner: 'yes' } as const
+const SIGNED_IN = { ...ALL, nobody: 401 } as const
+/** Absent and not yours are the same: 404. */
+const READ = { ...SIGNED_IN, other: 404 } as const
+const WRITE = { ...READ, coach: 403, crew: 403 } as const
+const CREW = { ...READ, coach: 403 } as const
+
+const outing = (of: Garage) => ({ layoutId: of.layoutId, carId: of.carId, setupId: of.setupId, driverId: of.me.id })
+const unique = () => `Name ${Math.random().toString(36).slice(2)}`
+
+/** Every route of server/api, with who may use it. A route that is missing here fails the test below. */
+const ROUTES: Record<string, Case> = {
+  'health.get': { path: () => '/api/health', expected: ALL },
+  'register.post': { path: () => '/api/register', body: () => ({ name: 'N', email: `${unique().replace(' ', '')}@lapwright.example`, password: 'long enough password', teamName: 'T' }), expected: ALL },
+  'sign-in.post': { path: () => '/api/sign-in', body: of => ({ email: of.email, password: 'a long enough password' }), expected: ALL },
+  'sign-out.post': { path: () => '/api/sign-out', expected: ALL },
+  'password.post': { path: () => '/api/password', body: () => ({ currentPassword: 'not it', newPassword: 'a long enough password' }), expected: { ...SIGNED_IN, other: 422, coach: 422, crew: 422, driver: 422, owner: 422 } },
+  'me.get': { path: () => '/api/me', expected: SIGNED_IN },
+  'members.get': { path: of => `/api/members?teamId=${of.teamId}`, expected: READ },
+  'circuits/index.get': { path: of => `/api/circuits?teamId=${of.teamId}`, expected: READ },
+  'circuits/index.post': { path: of => `/api/circuits?teamId=${of.teamId}`, body: () => ({ name: unique(), timeZone: 'UTC' }), expected: WRITE },
+  'circuits/[id].get': { path: of => `/api/circuits/${of.circuitId}`, expected: READ },
+  'circuits/[id].patch': { path: of => `/api/circuits/${of.circuitId}`, body: () => ({ name: unique(), timeZone: 'UTC' }), expected: WRITE },
+  'circuits/[id]/layouts.post': { path: of => `/api/circuits/${of.circuitId}/layouts`, body: () => ({ name: unique() }), expected: WRITE },
+  'layouts/index.get': { path: of => `/api/layouts?teamId=${of.teamId}`, expected: READ },
+  'layouts/[id].get': { path: of => `/api/layouts/${of.layoutId}`, expected: READ },
+  'layouts/[id].patch': { path: of => `/api/layouts/${of.layoutId}`, body: () => ({ name: unique() }), expected: WRITE },
+  'layouts/[id]/logs.get': { path: of => `/api/layouts/${of.layoutId}/logs`, expected: READ },
+  // An old version, so that nobody's try changes what the next one meets.
+  'layouts/[id]/lines.put': { path: of => `/api/layouts/${of.layoutId}/lines`, body: () => ({ basedOnVersion: 0, lines: [] }), expected: { ...WRITE, driver: 409, owner: 409 } },
+  'layouts/[id]/line-trials.post': { path: of => `/api/layouts/${of.layoutId}/line-trials`, body: of => ({ logId: of.logId, lines: fixtureLines('harrow-fell-lines.geojson') }), expected: READ },
+  'cars/index.get': { path: of => `/api/cars?teamId=${of.teamId}`, expected: READ },
+  'cars/index.post': { path: of => `/api/cars?teamId=${of.teamId}`, body: () => ({ name: unique() }), expected: CREW },
+  'cars/[id].get': { path: of => `/api/cars/${of.carId}`, expected: READ },
+  'cars/[id].patch': { path: of => `/api/cars/${of.carId}`, body: () => ({ name: unique() }), expected: CREW },
+  'cars/[id]/setups.post': { path: of => `/api/cars/${of.carId}/setups`, body: () => ({ name: 'Another', sheet: emptySheet() }), expected: CREW },
+  'setups/[id].get': { path: of => `/api/setups/${of.setupId}`, expected: READ },
+  'days/index.get': { path: of => `/api/days?teamId=${of.teamId}`, expected: READ },
+  'days/index.post': { path: of => `/api/days?teamId=${of.teamId}`, body: of => ({ circuitId: of.circuitId, date: '2026-10-03' }), expected: WRITE },
+  'days/[id].get': { path: of => `/api/days/${of.dayId}`, expected: READ },
+  'days/[id].patch': { path: of => `/api/days/${of.dayId}`, body: of => ({ circuitId: of.circuitId, date: '2026-09-12' }), expected: WRITE },
+  'days/[id]/outings.post': { path: of => `/api/days/${of.dayId}/outings`, body: outing, expected: CREW },
+  'outings/[id].get': { path: of => `/api/outings/${of.outingId}`, expected: READ },
+  'outings/[id].patch': { path: of => `/api/outings/${of.outingId}`, body: outing, expected: CREW },
+  // JSON is no upload: whoever may upload is told so.
+  'outings/[id]/logs.post': { path: of => `/api/outings/${of.outingId}/logs`, body: () => ({}), expected: { ...CREW, crew: 415, driver: 415, owner: 415 } },
+  'logs/[id].get': { path: of => `/api/logs/${of.logId}`, expected: READ },
+  'logs/[id]/columns.put': { path: of => `/api/logs/${of.logId}/columns`, body: () => ({ columns: [{ index: 0, source: 'x', channel: 'time', unit: 's' }, { index: 1, source: 'y', channel: 'latitude', unit: '°' }, { index: 2, source: 'z', channel: 'longitude', unit: '°' }] }), expected: { ...CREW, crew: 422, driver: 422, owner: 422 } },
+  'logs/[id]/events.get': { path: of => `/api/logs/${of.logId}/events`, expected: READ },
+  'logs/[id]/trace.get': { path: of => `/api/logs/${of.logId}/trace`, expected: READ },
+  'laps/index.get': { path: of => `/api/laps?teamId=${of.teamId}&layoutId=${of.layoutId}`, expected: READ },
+  'laps/[id].patch': { path: of => `/api/laps/${of.lapIds[0]}`, body: () => ({ excluded: false }), expected: WRITE },
+  'compare.get': { path: of => `/api/compare?lap=${of.lapIds[0]}&against=${of.lapIds[1]}`, expected: READ },
+  // Last, since it takes the log away.
+  'logs/[id].delete': { path: of => `/api/logs/${of.logId}`, expected: { ...CREW, crew: 204, driver: 404, owner: 404 } },
+}
+
+let owner: Knex
+let team: Team
+const clients = {} as Record<Asker, () => Promise<Client>>
+
+beforeAll(async () => {
+  owner = connect('owner')
+  const made = await garage()
+  await saveLines(made, fixtureLines('harrow-fell-lines.geojson'))
+  const log = await uploadAndRead(made, made.outingId, 'harrow-fell.csv', fixture('harrow-fell.csv'))
+  const [first, second] = (await lapsOf(made, made.outingId)).filter(lap => lap.kind === 'timed')
+  team = { ...made, logId: log.id, lapIds: [first!.id, second!.id] }
+  clients.nobody = async () => makeClient(baseUrl())
+  const stranger = await garage()
+  clients.other = async () => makeClient(baseUrl(), stranger.client.cookie())
+  clients.owner = async () => makeClient(baseUrl(), made.client.cookie())
+  for (const role of ['coach', 'crew', 'driver'] as const) {
+    const member = await register(`A ${role}`)
+    await addMember(owner, team.teamId, member.me.id, role)
+    clients[role] = async () => makeClient(baseUrl(), member.client.cookie())
+  }
+})
+
+afterAll(() => owner.destroy())
+
+async function statusOf(client: Client, method: string, path: string, body: unknown): Promise<number> {
+  if (!path.endsWith('/events')) return (await client.send(method, path, body)).status
+  // A stream has no end; its head tells.
+  const stop = new AbortController()
+  const response = await fetch(baseUrl() + path, { headers: { cookie: client.cookie() }, signal: stop.signal })
+  stop.abort()
+  return response.status
+}
+
+describe('who may use which route', () => {
+  it('is said for every route there is', () => {
+    const folder = fileURLToPath(new URL('../../server/api', import.meta.url))
+    const files = readdirSync(folder, { recursive: true, encoding: 'utf8' }).filter(name => name.endsWith('.ts')).map(name => name.replace(/\.ts$/, ''))
+    expect(files.sort()).toEqual(Object.keys(ROUTES).sort())
+  })
+
+  it.each(Object.entries(ROUTES))('%s', async (name, route) => {
+    const method = name.split('.').at(-1)!.toUpperCase()
+    for (const asker of ASKERS) {
+      const status = await statusOf(await clients[asker](), method, route.path(team), route.body?.(team))
+      const expected = route.expected[asker]
+      if (expected === 'yes') expect(status, `${asker} ${name}`).toSatisfy((found: number) => found >= 200 && found < 300)
+      else expect(status, `${asker} ${name}`).toBe(expected)
+    }
+  })
+
+  it('never takes a team that the person is not in, whatever else is right', async () => {
+    const stranger = await garage()
+    const { status } = await stranger.client.send('POST', `/api/days/${stranger.dayId}/outings`, { ...outing(stranger), carId: team.carId, setupId: team.setupId })
+    expect(status).toBe(422)
+    expect((await stranger.client.send('POST', `/api/layouts/${stranger.layoutId}/line-trials`, { logId: team.logId, lines: fixtureLines('harrow-fell-lines.geojson') })).status).toBe(404)
+    expect((await stranger.client.send('GET', `/api/days?teamId=${team.teamId}`)).status).toBe(404)
+    expect((await stranger.client.send('GET', '/api/days?teamId=nonsense')).status).toBe(400)
+  })
+
+  it('answers an unknown route with 404', async () => {
+    expect((await makeClient(baseUrl()).send('GET', '/api/nothing-here')).status).toBe(404)
+  })
+})

@@ -1,0 +1,94 @@
+import { randomUUID } from 'node:crypto'
+import { readFileSync } from 'node:fs'
+import process from 'node:process'
+import type { Layout, SavedLine } from '../../shared/schemas/circuits'
+import type { Log, Outing } from '../../shared/schemas/days'
+import type { Me } from '../../shared/schemas/people'
+import { emptySheet } from '../../shared/schemas/setups'
+import { makeClient, waitFor, type Client } from '../../seeds/client'
+
+export const PASSWORD = 'a long enough password'
+
+/** Where the server under test is. */
+export function baseUrl(): string {
+  const url = process.env.LAPWRIGHT_TEST_URL
+  if (!url) throw new Error('no server under test: run `npm test -- api`, or `npm test -- servers` in another terminal')
+  return url
+}
+
+export interface Registered { client: Client, me: Me, teamId: string, email: string }
+
+/** A new person, signed in, with a team of their own. */
+export async function register(name = 'Nell Placeholder'): Promise<Registered> {
+  const client = makeClient(baseUrl())
+  const email = `${randomUUID()}@lapwright.example`
+  const me = await client.must<Me>('POST', '/api/register', { name, email, password: PASSWORD, teamName: `Team of ${name}` })
+  return { client, me, teamId: me.teams[0]!.id, email }
+}
+
+export interface Garage extends Registered {
+  circuitId: string
+  layoutId: string
+  carId: string
+  setupId: string
+  dayId: string
+  outingId: string
+}
+
+/** A team with a circuit, a layout, a car with a sheet, a day and one outing; no lines and no log yet. */
+export async function garage(): Promise<Garage> {
+  const registered = await register()
+  const { client, me, teamId } = registered
+  const id = async (path: string, body: unknown) => (await client.must<{ id: string }>('POST', path, body)).id
+  const circuitId = await id(`/api/circuits?teamId=${teamId}`, { name: 'Harrow Fell', timeZone: 'Europe/London' })
+  const layoutId = await id(`/api/circuits/${circuitId}/layouts`, { name: 'Full circuit' })
+  const carId = await id(`/api/cars?teamId=${teamId}`, { name: 'No. 47', year: 2006, kind: 'hatchback' })
+  const setupId = await id(`/api/cars/${carId}/setups`, { name: 'Baseline', sheet: emptySheet() })
+  const dayId = await id(`/api/days?teamId=${teamId}`, { circuitId, date: '2026-09-12' })
+  const outingId = await id(`/api/days/${dayId}/outings`, { layoutId, carId, setupId, driverId: me.id })
+  return { ...registered, circuitId, layoutId, carId, setupId, dayId, outingId }
+}
+
+export function fixture(name: string): Buffer<ArrayBuffer> {
+  return Buffer.from(readFileSync(new URL(`../../fixtures/${name}`, import.meta.url)))
+}
+
+interface LineFeature { properties: { role: SavedLine['kind'], order?: number }, geometry: { coordinates: [[number, number], [number, number]] } }
+
+/** Timing lines of a GeoJSON file of fixtures/, as PUT /api/layouts/:id/lines takes them. */
+export function fixtureLines(name: string) {
+  const { features } = JSON.parse(fixture(name).toString()) as { features: LineFeature[] }
+  const point = ([longitudeDeg, latitudeDeg]: [number, number]) => ({ latitudeDeg, longitudeDeg })
+  return features.map(({ properties, geometry: { coordinates: [a, b] } }) => ({ kind: properties.role, ordinal: properties.order ?? 0, a: point(a), b: point(b) }))
+}
+
+export async function saveLines(garage: Garage, lines: ReturnType<typeof fixtureLines>): Promise<Layout & { recutting: number }> {
+  const { linesVersion } = await garage.client.must<Layout>('GET', `/api/layouts/${garage.layoutId}`)
+  return garage.client.must('PUT', `/api/layouts/${garage.layoutId}/lines`, { basedOnVersion: linesVersion, lines })
+}
+
+/** Uploads a log, takes the columns as they were guessed, and waits until it has been read. */
+export async function uploadAndRead({ client }: Garage, outingId: string, fileName: string, bytes: BlobPart): Promise<Log> {
+  const sent = await client.upload<{ id: string, status: string, detail?: string }>(`/api/outings/${outingId}/logs`, fileName, bytes)
+  if (sent.status !== 201) throw new Error(`upload answered ${sent.status}: ${sent.body.detail}`)
+  if (sent.body.status === 'mapping') await confirmColumns(client, sent.body.id)
+  return settled(client, sent.body.id)
+}
+
+export async function confirmColumns(client: Client, logId: string): Promise<void> {
+  const { preview } = await client.must<Log>('GET', `/api/logs/${logId}`)
+  const columns = preview!.columns.map(({ index, source, channel, unit }) => ({ index, source, channel, unit }))
+  await client.must('PUT', `/api/logs/${logId}/columns`, { columns })
+}
+
+/** The log once nothing works on it any more. */
+export function settled(client: Client, logId: string): Promise<Log> {
+  return waitFor('the log', async () => {
+    const log = await client.must<Log>('GET', `/api/logs/${logId}`)
+    return ['ready', 'no_lines', 'refused'].includes(log.status) ? log : null
+  })
+}
+
+export async function lapsOf({ client }: Registered, outingId: string): Promise<Outing['laps']> {
+  return (await client.must<Outing>('GET', `/api/outings/${outingId}`)).laps
+}
