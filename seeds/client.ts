@@ -23,6 +23,8 @@ export interface Client {
 export function makeClient(baseUrl: string, cookie = ''): Client {
   let held = cookie
   const ask = async <T>(method: string, path: string, init: RequestInit): Promise<Answer<T>> => {
+    // After seconds of computing, fetch has not yet noticed which idle connections the server closed in the meantime.
+    await new Promise(resolve => setTimeout(resolve, 5))
     const headers = new Headers(init.headers)
     if (held) headers.set('cookie', held)
     const response = await fetch(baseUrl + path, { ...init, method, headers, redirect: 'manual' })

@@ -78,6 +78,6 @@ export function channelKind(name: string): ChannelKind | undefined {
 
 /** A slug of a header that names a channel Lapwright does not know: lower case, words joined by underscores. */
 export function channelSlug(header: string): string {
-  const slug = header.normalize('NFKD').toLowerCase().replace(/[^a-z0-9]+/g, '_').replace(/^_+|_+$/g, '')
+  const slug = header.normalize('NFKD').replace(/\p{M}/gu, '').toLowerCase().replace(/[^a-z0-9]+/g, '_').replace(/^_+|_+$/g, '')
   return slug || 'column'
 }

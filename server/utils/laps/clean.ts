@@ -4,12 +4,14 @@ import type { Channel, CleanLog, ReadLog } from './types'
 import { median } from 'simple-statistics'
 import { FLOAT64_CHANNELS, channelKind } from '../../../shared/channels'
 import { LapsError } from './errors'
-import { findFixes, findJumps, interpolateFixes, isUsablePosition } from './fixes'
+import { distanceM, findFixes, findJumps, interpolateFixes, isUsablePosition } from './fixes'
 import { createProblems } from './problems'
 
 const FEWEST_SAMPLES = 10
 const MOST_BACKWARD = 0.01
 const SHORTEST_GAP_S = 0.5
+/** Half of all fixes following each other faster than this is no car, but other columns taken for the position. */
+const FASTEST_MPS = 200
 /** Times are written to a microsecond at best, so that a gap of exactly the limit is not one by rounding. */
 const TIME_ROUNDING_S = 1e-6
 
@@ -22,7 +24,7 @@ const TIME_ROUNDING_S = 1e-6
  * where missing; those without any value go.
  * @param read as it comes from the reader; it is not changed
  * @throws {LapsError} 'time_runs_back' with the line when more than 1 % of the rows (and more than one) step back,
- *   'no_time' | 'no_position' when none is left, 'too_short' below 10 usable samples. O(n).
+ *   'no_time' | 'no_position' when none is left or the positions move as no car does, 'too_short' below 10 usable samples. O(n).
  */
 export function cleanLog(read: ReadLog): CleanLog {
   const problems = createProblems()
@@ -44,6 +46,7 @@ export function cleanLog(read: ReadLog): CleanLog {
   const [first, last] = [good[0], good.at(-1)]
   if (first === undefined || last === undefined) throw new LapsError('no_position', 'No row of the log has a usable position.', lines[0])
   if (last - first + 1 < FEWEST_SAMPLES) throw new LapsError('too_short', `Only ${last - first + 1} rows have both a time and a position; at least ${FEWEST_SAMPLES} are needed.`, lines[first])
+  refuseWildPositions(track, good, lines[first]!)
   reportEnds(lines, first, last, problems)
 
   const timeS = track.timeS.slice(first, last + 1)
@@ -132,6 +135,12 @@ function reportPositions({ latitudeDeg, longitudeDeg }: Track, lines: Uint32Arra
     const what = code === 'position_zero' ? 'The position is 0, 0, which stands for no fix' : 'The position is not on the earth'
     problems.add(code, { code, message: `${what}; it counts as missing.`, row: lines[i]! })
   }
+}
+
+function refuseWildPositions(track: Track, fixes: readonly number[], line: number): void {
+  const speedMps = median(fixes.slice(1).map((row, i) => distanceM(track, fixes[i]!, row) / (track.timeS[row]! - track.timeS[fixes[i]!]!)))
+  if (speedMps <= FASTEST_MPS) return
+  throw new LapsError('no_position', `The positions move at ${Math.round(speedMps * 3.6)} km/h, which no car does. Check which columns are latitude, longitude and time, and their units.`, line)
 }
 
 function reportEnds(lines: Uint32Array, first: number, last: number, problems: ProblemList): void {

@@ -4,8 +4,9 @@ const EARTH_M_PER_DEG = 111_195
 const TEN_G_MPS2 = 98.0665
 /** Below this a car stands, and a position that stays the same is a measurement and not a repeat. */
 const STANDING_MPS = 0.5
-/** Scatter of a receiver that is no jump. Common practice, no source. */
+/** Scatter of a receiver that is no jump: this much, and six times what this log shows. Common practice, no source. */
 const SCATTER_M = 2
+const SCATTERS = 6
 /** How many fixes in a row can be off together and still be told from a real change of place. */
 const LONGEST_JUMP = 10
 
@@ -31,7 +32,7 @@ export interface Track {
  * Metres between two rows of a track, on a plane scaled at the first of them: good to 0.5 %, which is enough to tell a
  * jump from driving and is used for nothing else.
  */
-function distanceM({ latitudeDeg, longitudeDeg }: Track, a: number, b: number): number {
+export function distanceM({ latitudeDeg, longitudeDeg }: Track, a: number, b: number): number {
   const northDeg = latitudeDeg[b]! - latitudeDeg[a]!
   const eastDeg = longitudeStepDeg(longitudeDeg[a]!, longitudeDeg[b]!) * Math.cos(latitudeDeg[a]! * Math.PI / 180)
   return Math.hypot(northDeg, eastDeg) * EARTH_M_PER_DEG
@@ -89,13 +90,14 @@ function standingRows(repeats: readonly number[], speedMps: Float64Array | undef
  * Finds fixes that no car could have reached. Walking from the last good fix, a fix is a jump when the speed to it
  * differs from the speed before it by more than 10 g could change it in that time, and one of the next ten fixes can
  * be reached without it. Where none can, the place did change for good (the receiver found itself again) and the fix
- * stays. Differences that scatter and the resolution of the file explain (2 m and two steps of latitude) are no jump.
+ * stays. What scatter and the resolution of the file explain (2 m, six times the median distance of a fix from the
+ * straight between its neighbours, two steps of latitude) is no jump.
  * @param rows rows with a fix, rising
  * @returns the rows that are jumps, rising. O(n).
  */
 export function findJumps(track: Track, rows: readonly number[]): number[] {
   if (rows.length < 4) return []
-  const toleranceM = SCATTER_M + 2 * resolutionM(track, rows)
+  const toleranceM = SCATTER_M + SCATTERS * scatterM(track, rows) + 2 * resolutionM(track, rows)
   const speed = (a: number, b: number) => distanceM(track, a, b) / (track.timeS[b]! - track.timeS[a]!)
   const explained = (a: number, b: number, beforeMps: number) => {
     const stepS = track.timeS[b]! - track.timeS[a]!
@@ -134,6 +136,19 @@ function nextExplained(
   for (let i = from + 1; i < to; i++) if (explained(rows[i]!)) return i
   // At the end of the file nothing follows that could speak for the fix.
   return to === rows.length && rows.length - from <= 2 && good > 0 ? rows.length : undefined
+}
+
+/** Median distance of a fix from the straight between its neighbours. */
+function scatterM(track: Track, rows: readonly number[]): number {
+  const { timeS, latitudeDeg, longitudeDeg } = track
+  return median(rows.slice(1, -1).map((row, n) => {
+    const [before, after] = [rows[n]!, rows[n + 2]!]
+    const share = (timeS[row]! - timeS[before]!) / (timeS[after]! - timeS[before]!)
+    const northDeg = latitudeDeg[row]! - latitudeDeg[before]! - share * (latitudeDeg[after]! - latitudeDeg[before]!)
+    const eastDeg = longitudeStepDeg(longitudeDeg[before]!, longitudeDeg[row]!)
+      - share * longitudeStepDeg(longitudeDeg[before]!, longitudeDeg[after]!)
+    return Math.hypot(northDeg, eastDeg * Math.cos(latitudeDeg[row]! * Math.PI / 180)) * EARTH_M_PER_DEG
+  }))
 }
 
 /** The smallest step of latitude in the file, metres: how coarse its positions are written. */

@@ -112,6 +112,8 @@ export function toDegrees(plane: Plane, xM: number, yM: number): { latitudeDeg: 
   const alongM = p + u * cos
   const overM = z + u * sin
   const latitude = Math.atan2(overM * ratio, Math.hypot(alongM, xM))
-  const longitudeDeg = plane.originLongitudeDeg + Math.atan2(xM, alongM) / RAD
-  return { latitudeDeg: latitude / RAD, longitudeDeg: longitudeDeg - 360 * Math.floor((longitudeDeg + 180) / 360) }
+  let longitudeDeg = plane.originLongitudeDeg + Math.atan2(xM, alongM) / RAD
+  while (longitudeDeg >= 180) longitudeDeg -= 360
+  while (longitudeDeg < -180) longitudeDeg += 360
+  return { latitudeDeg: latitude / RAD, longitudeDeg }
 }

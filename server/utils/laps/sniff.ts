@@ -67,11 +67,12 @@ export function sniffLog(head: Uint8Array, options: { complete?: boolean } = {})
 /**
  * A stable text of a file's header, by which a mapping that a person has confirmed is found again. It holds the names,
  * the delimiter, and the units of a units row, since the same names in another unit need another mapping.
+ * @returns null for a file without a header, of which nothing could be remembered
  */
-export function headerKey(preview: LogPreview): string {
+export function headerKey(preview: LogPreview): string | null {
+  if (preview.headerRow === preview.firstDataRow) return null
   const units = preview.unitsRow === null ? [] : preview.columns.map(column => column.confidence === 'likely' ? '' : column.unit)
-  const headless = preview.headerRow === preview.firstDataRow
-  return JSON.stringify([preview.delimiter, headless, preview.columns.map(column => column.source), units])
+  return JSON.stringify([preview.delimiter, preview.columns.map(column => column.source), units])
 }
 
 /** Nothing but spaces, line ends and a byte order mark. */

@@ -52,7 +52,7 @@ async function refuseTwin(transaction: <T>(run: (db: Transaction) => Promise<T>)
 /** The log becomes known: with the remembered map of its header it goes straight to the worker. */
 async function keep(db: Transaction, log: { id: string, teamId: string, outingId: string }, upload: Upload, preview: LogPreview): Promise<'queued' | 'mapping'> {
   const key = headerKey(preview)
-  const remembered = await db('column_maps').where({ team_id: log.teamId, header_key: key }).first<{ column_map: ColumnMap } | undefined>('column_map')
+  const remembered = key === null ? undefined : await db('column_maps').where({ team_id: log.teamId, header_key: key }).first<{ column_map: ColumnMap } | undefined>('column_map')
   const status = remembered ? 'queued' : 'mapping'
   await db('logs').where('id', log.id).update({
     file_name: upload.fileName,
