@@ -113,7 +113,7 @@ function doubtfulGaps({ timeS, xM, yM, vxMps, vyMps, gapAfter }: LogPath, line: 
     const fastestMps = Math.max(Math.hypot(vxMps[i]!, vyMps[i]!), Math.hypot(vxMps[j]!, vyMps[j]!))
     const wayM = Math.max(Math.hypot(dx, dy), h * fastestMps)
     const overLineM = Math.hypot(lineX - xM[i]!, lineY - yM[i]!) + Math.hypot(xM[j]! - lineX, yM[j]! - lineY)
-    if (overLineM <= 0) doubtful.push({ fromS: timeS[i]!, toS: timeS[j]! })
+    if (overLineM <= GAP_REACH * wayM + lengthM) doubtful.push({ fromS: timeS[i]!, toS: timeS[j]! })
   }
   return doubtful
 }

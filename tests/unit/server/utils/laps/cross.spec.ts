@@ -147,6 +147,12 @@ describe('findCrossings in a gap', () => {
     expect(crossing!.timeS).toBeCloseTo(4 + 3 * 120 / 560, 9)
   })
 
+  it.each([[1.15, 'agrees'], [1.6, 'disagrees']])('a way %f times as long as the speed says %s', (longer, gap) => {
+    // 60 m at 20 m/s for 3 s; a quarter and 2 m are allowed: up to 77 m.
+    const [crossing] = along(timeS, t => t <= 4 ? -100 + 20 * t : -160 + 60 * longer + 20 * t, () => 0, LINE, gaps)
+    expect(crossing!.gap).toBe(gap)
+  })
+
   it('does not mark a crossing elsewhere', () => {
     expect(along(timeS, t => -20 + 10 * t, () => 0, LINE, gaps)[0]!.gap).toBe('none')
   })

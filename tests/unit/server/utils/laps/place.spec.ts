@@ -81,6 +81,19 @@ describe('placeOnPath', () => {
     }), { numRuns: 50 })
   })
 
+  it('stands still while a car rolls back', () => {
+    const reference = lapOf(OVAL, 30, 10)
+    // From 50 m to 60 m, back to 54 m, and on.
+    const ways = [...times(0, 60, 1), ...times(0, 6, 1).map(d => 60 - d), ...times(55, 120, 1)]
+    const path = lapPath(times(0, ways.length - 1, 1), ways, ways.map(() => 0), 3, ways.length - 6)
+    const stationM = placeOnPath(reference, path)
+    for (let i = 1; i < stationM.length; i++) expect(stationM[i]).toBeGreaterThanOrEqual(stationM[i - 1]!)
+    const back = path.timeS.findIndex(t => t >= 67)
+    // The curve through the samples turns within a decimetre or two of the last one.
+    expect(path.xM[back]).toBeCloseTo(54, 0)
+    expect(Math.abs(stationM[back]! - 60)).toBeLessThan(0.2)
+  })
+
   it('does not mistake a straight 12 m away for its own', () => {
     const narrow = oval(400, 6)
     const reference = lapOf(narrow, 25, 10)

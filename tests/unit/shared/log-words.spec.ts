@@ -1,0 +1,34 @@
+import { describe, expect, it } from 'vitest'
+import { isUnderWay, progressWords, rowWords, STATUS_WORDS, stepStates, waitingLogs } from '../../../shared/log-words'
+import { LOG_STATUSES, LOG_STEPS } from '../../../shared/schemas/logs'
+
+describe('words about a log', () => {
+  it('has words for every status, all different', () => {
+    expect(new Set(LOG_STATUSES.map(status => STATUS_WORDS[status])).size).toBe(LOG_STATUSES.length)
+  })
+
+  it('says the step and how far the whole is', () => {
+    expect(progressWords({ status: 'processing', step: 'lap', fraction: 0.624 })).toBe('Cutting it into laps, 62 %')
+    expect(progressWords({ status: 'processing', step: null, fraction: 0 })).toBe('Being read, 0 %')
+    expect(progressWords({ status: 'queued', step: null, fraction: 0 })).toBe('waiting to be read')
+  })
+
+  it('knows which steps are done, which is now and which wait', () => {
+    const states = (status: 'queued' | 'processing' | 'ready', step: string | null) => stepStates({ status, step }).map(each => each.state).join(' ')
+    expect(states('processing', 'project')).toBe('done done now waiting waiting waiting')
+    expect(states('queued', null)).toBe('waiting waiting waiting waiting waiting waiting')
+    expect(states('ready', null)).toBe('done done done done done done')
+    expect(stepStates({ status: 'queued', step: null }).map(each => each.step)).toEqual([...LOG_STEPS])
+  })
+
+  it('tells logs that move by themselves from those that wait for a person', () => {
+    expect(LOG_STATUSES.filter(isUnderWay)).toEqual(['uploading', 'queued', 'processing'])
+    expect(waitingLogs(LOG_STATUSES.map(status => ({ status }))).map(log => log.status)).toEqual(['mapping', 'no_lines'])
+  })
+
+  it('writes the rows of a problem', () => {
+    expect(rowWords({ row: 52881 })).toBe('row 52881')
+    expect(rowWords({ row: 70902, count: 339 })).toBe('row 70902 and 338 more')
+    expect(rowWords({})).toBe('')
+  })
+})
