@@ -13,8 +13,13 @@ export const notesSchema = z.string().trim().max(8000, 'at most 8000 characters'
 
 /** A figure that may be missing. `from` and `to` are the plausible range, said in the message. */
 export function optionalNumber(from: number, to: number, unit: string) {
-  const message = `between ${from} and ${to}${unit ? ` ${unit}` : ''}`
+  const message = `between ${from} and ${to}${unit ? ` ${unit}` : ''}`.replaceAll('-', '\u2212')
   return z.number(message).min(from, message).max(to, message).nullable().default(null)
+}
+
+/** A pressure above ambient that may be missing, kPa. The message says bar as well: forms show it in bar. */
+export function optionalPressureKpa() {
+  return optionalNumber(50, 500, 'kPa, that is 0.5 to 5 bar')
 }
 
 /** Calendar date as YYYY-MM-DD. */

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { dateSchema, idSchema, instantSchema, notesSchema, optionalNumber } from './common'
+import { dateSchema, idSchema, instantSchema, notesSchema, optionalNumber, optionalPressureKpa } from './common'
 import { CORNERS } from './setups'
 import { LOG_STATUSES, logPreviewSchema, logProblemSchema, columnMapSchema } from './logs'
 
@@ -17,7 +17,7 @@ export type Conditions = z.infer<typeof conditionsSchema>
 
 /** Pressures measured on return, kPa above ambient. */
 export const hotPressuresSchema = z.object(
-  Object.fromEntries(CORNERS.map(corner => [corner, optionalNumber(50, 500, 'kPa')])) as Record<(typeof CORNERS)[number], ReturnType<typeof optionalNumber>>,
+  Object.fromEntries(CORNERS.map(corner => [corner, optionalPressureKpa()])) as Record<(typeof CORNERS)[number], ReturnType<typeof optionalNumber>>,
 )
 
 export const dayBody = z.object({

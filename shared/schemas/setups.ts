@@ -1,12 +1,12 @@
 import { z } from 'zod'
-import { idSchema, nameSchema, notesSchema, optionalNumber } from './common'
+import { idSchema, nameSchema, notesSchema, optionalNumber, optionalPressureKpa } from './common'
 
 export const CORNERS = ['fl', 'fr', 'rl', 'rr'] as const
 export type CornerKey = (typeof CORNERS)[number]
 
 const cornerSchema = z.object({
-  coldKpa: optionalNumber(50, 500, 'kPa'),
-  targetHotKpa: optionalNumber(50, 500, 'kPa'),
+  coldKpa: optionalPressureKpa(),
+  targetHotKpa: optionalPressureKpa(),
   camberDeg: optionalNumber(-12, 12, '°'),
   casterDeg: optionalNumber(-5, 20, '°'),
   toeMm: optionalNumber(-30, 30, 'mm'),

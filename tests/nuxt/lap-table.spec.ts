@@ -1,7 +1,7 @@
 import { mountSuspended, registerEndpoint } from '@nuxt/test-utils/runtime'
 import { flushPromises } from '@vue/test-utils'
 import { readBody } from 'h3'
-import { beforeEach, describe, expect, it } from 'vitest'
+import { beforeEach, describe, expect, it, vi } from 'vitest'
 import LapTable from '../../components/lap/LapTable.vue'
 import type { Lap } from '../../shared/schemas/days'
 import { useSessionStore } from '../../stores/session'
@@ -80,9 +80,8 @@ describe('LapTable', () => {
     expect(sent).toEqual([])
     await page.get('.ask input').setValue(' traffic ')
     await page.get('.ask form').trigger('submit')
-    await flushPromises()
+    await vi.waitFor(() => expect(page.emitted('changed')).toHaveLength(1))
     expect(sent).toEqual([{ excluded: true, reason: 'traffic' }])
-    expect(page.emitted('changed')).toHaveLength(1)
     expect(page.find('.ask').exists()).toBe(false)
     page.unmount()
   })

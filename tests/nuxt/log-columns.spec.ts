@@ -28,8 +28,8 @@ describe('LogColumns', () => {
     expect(rows).toHaveLength(5)
     expect(rows[3]?.findAll('.sample span').map(value => value.text())).toEqual(['1.5', '2.5', '3.5'])
     expect(rows[3]?.text()).toContain('about gps_spd')
-    expect(rows.map(row => row.find('.say svg').attributes('aria-label'))).toEqual(
-      ['in order', 'in order', 'in order', 'please check', undefined],
+    expect(rows.map(row => row.findAll('.say svg').map(sign => sign.attributes('aria-label')))).toEqual(
+      [['in order'], ['in order'], ['in order'], ['please check'], []],
     )
     page.unmount()
   })

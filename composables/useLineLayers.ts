@@ -1,0 +1,148 @@
+import type * as Leaflet from 'leaflet'
+import type { DraftLine } from '#shared/lines'
+import { lineName } from '#shared/lines'
+
+type L = typeof Leaflet
+/** What is seen of a line follows what is held of it. */
+type Follow = (to: Leaflet.LatLng[]) => void
+
+interface Wishes {
+  /** Broad enough for a finger. */
+  touch: boolean
+  mayEdit: boolean
+  select: (key: string) => void
+  change: (key: string, ends: Pick<DraftLine, 'a' | 'b'>) => void
+}
+
+const place = (point: DraftLine['a']): [number, number] => [point.latitudeDeg, point.longitudeDeg]
+const point = (at: Leaflet.LatLng): DraftLine['a'] => ({ latitudeDeg: at.lat, longitudeDeg: at.lng })
+
+/** The timing lines on the map; the selected one can be dragged by its ends and as a whole. */
+export function drawLines(L: L, map: Leaflet.Map, lines: readonly (DraftLine & { stationM: number | null })[], selected: string | null, wishes: Wishes): Leaflet.LayerGroup {
+  const group = L.layerGroup().addTo(map)
+  const centre = middle(lines.flatMap(line => [line.a, line.b]))
+  for (const line of lines) {
+    const ends = [place(line.a), place(line.b)]
+    const isSelected = line.key === selected
+    const stroke = { lineCap: 'butt', interactive: false, pmIgnore: true } as const
+    const glow = L.polyline(ends, { ...stroke, color: 'var(--mark)', weight: 22, opacity: isSelected ? 0.75 : 0 }).addTo(group)
+    const seen = L.polyline(ends, { ...stroke, color: 'var(--ink)', weight: line.ordinal === 0 ? 6 : 2.5 }).addTo(group)
+    const grip = L.polyline(ends, { color: 'var(--ink)', weight: wishes.touch ? 44 : 22, opacity: 0, lineCap: 'butt', className: isSelected ? 'line-grip chosen' : 'line-grip', pmIgnore: false }).addTo(group)
+    const follow = (to: Leaflet.LatLng[]) => {
+      glow.setLatLngs(to)
+      seen.setLatLngs(to)
+    }
+    const name = `<b>${lineName(line.ordinal)}</b>${line.stationM === null ? '' : `<br>${Math.round(line.stationM)} m`}`
+    L.marker(outer(line, centre), { icon: L.divIcon({ className: '', iconSize: [0, 0] }), interactive: false, keyboard: false, pmIgnore: true })
+      .bindTooltip(name, { permanent: true, direction: side(line, centre), offset: offset(side(line, centre)), className: 'map-word' }).addTo(group)
+    grip.on('click', () => wishes.select(line.key))
+    if (isSelected && wishes.mayEdit) {
+      const apartPx = map.latLngToLayerPoint(ends[0]!).distanceTo(map.latLngToLayerPoint(ends[1]!))
+      // Handles for fingers would hide a line that is shorter than they are; its body can still be dragged.
+      if (!wishes.touch || apartPx > 76) dragEnds(grip, follow, to => wishes.change(line.key, to))
+      dragWhole(L, map, grip, follow, to => wishes.change(line.key, to))
+    }
+  }
+  return group
+}
+
+function middle(points: DraftLine['a'][]): DraftLine['a'] {
+  const mean = (axis: keyof DraftLine['a']) => points.reduce((sum, one) => sum + one[axis], 0) / (points.length || 1)
+  return { latitudeDeg: mean('latitudeDeg'), longitudeDeg: mean('longitudeDeg') }
+}
+
+/** Degrees of longitude are shorter than those of latitude. */
+function awayDeg(from: DraftLine['a'], to: DraftLine['a']): number {
+  return Math.hypot(to.latitudeDeg - from.latitudeDeg, (to.longitudeDeg - from.longitudeDeg) * Math.cos(from.latitudeDeg * Math.PI / 180))
+}
+
+/** The end of a line that lies on the outer side of the circuit: its name stands there, off the trace. */
+function outer(line: DraftLine, centre: DraftLine['a']): [number, number] {
+  return place(awayDeg(centre, line.a) > awayDeg(centre, line.b) ? line.a : line.b)
+}
+
+function side(line: DraftLine, centre: DraftLine['a']): 'top' | 'bottom' | 'left' | 'right' {
+  const [latitudeDeg, longitudeDeg] = outer(line, centre)
+  const between = middle([line.a, line.b])
+  const up = latitudeDeg - between.latitudeDeg
+  const right = (longitudeDeg - between.longitudeDeg) * Math.cos(latitudeDeg * Math.PI / 180)
+  if (Math.abs(up) > Math.abs(right)) return up > 0 ? 'top' : 'bottom'
+  return right > 0 ? 'right' : 'left'
+}
+
+/** Room for the handle between the end of the line and its name, px. */
+function offset(direction: ReturnType<typeof side>): [number, number] {
+  return { top: [0, -10], bottom: [0, 10], left: [-12, 0], right: [12, 0] }[direction] as [number, number]
+}
+
+function endsOf(grip: Leaflet.Polyline): Pick<DraftLine, 'a' | 'b'> {
+  const [a, b] = grip.getLatLngs() as Leaflet.LatLng[]
+  return { a: point(a!), b: point(b!) }
+}
+
+/** Handles at both ends, by the drawing library. */
+function dragEnds(grip: Leaflet.Polyline, follow: Follow, done: (ends: Pick<DraftLine, 'a' | 'b'>) => void) {
+  grip.pm.enable({ snappable: false, hideMiddleMarkers: true, preventMarkerRemoval: true, addVertexOnClick: false, allowSelfIntersection: true })
+  grip.on('pm:markerdrag', () => follow(grip.getLatLngs() as Leaflet.LatLng[]))
+  grip.on('pm:markerdragend', () => done(endsOf(grip)))
+}
+
+/** The body of the line moves all of it, without turning it. The library drags either ends or the whole, never both. */
+function dragWhole(L: L, map: Leaflet.Map, grip: Leaflet.Polyline, follow: Follow, done: (ends: Pick<DraftLine, 'a' | 'b'>) => void) {
+  const element = grip.getElement() as SVGPathElement | undefined
+  if (!element) return
+  element.style.touchAction = 'none'
+  element.style.cursor = 'move'
+  L.DomEvent.on(element as unknown as HTMLElement, 'mousedown touchstart', L.DomEvent.stopPropagation)
+  let from: Leaflet.Point | null = null
+  let start: Leaflet.Point[] = []
+  let moved = false
+  element.addEventListener('pointerdown', (event) => {
+    event.stopPropagation()
+    element.setPointerCapture(event.pointerId)
+    from = map.mouseEventToLayerPoint(event)
+    start = (grip.getLatLngs() as Leaflet.LatLng[]).map(at => map.latLngToLayerPoint(at))
+    moved = false
+  })
+  element.addEventListener('pointermove', (event) => {
+    if (!from) return
+    const by = map.mouseEventToLayerPoint(event).subtract(from)
+    if (!moved && by.distanceTo(L.point(0, 0)) < 3) return
+    if (!moved) grip.pm.disable()
+    moved = true
+    const to = start.map(at => map.layerPointToLatLng(at.add(by)))
+    grip.setLatLngs(to)
+    follow(to)
+  })
+  const stop = () => {
+    if (from && moved) done(endsOf(grip))
+    from = null
+  }
+  element.addEventListener('pointerup', stop)
+  element.addEventListener('pointercancel', stop)
+}
+
+/** Let a person draw a line by its two ends. Returns what stops it. */
+export function drawByHand(map: Leaflet.Map, drawn: (ends: Pick<DraftLine, 'a' | 'b'>) => void): () => void {
+  const stroke = { color: 'var(--ink)', weight: 2.5 }
+  map.pm.setGlobalOptions({ snappable: false })
+  map.pm.enableDraw('Line', { snappable: false, tooltips: false, allowSelfIntersection: true, templineStyle: stroke, hintlineStyle: { ...stroke, dashArray: '4 4' } })
+  const onStart = (event: { workingLayer: Leaflet.Layer }) => {
+    event.workingLayer.on('pm:vertexadded', () => {
+      const working = event.workingLayer as Leaflet.Polyline
+      if ((working.getLatLngs() as Leaflet.LatLng[]).length < 2) return
+      const ends = endsOf(working)
+      stop()
+      drawn(ends)
+    })
+  }
+  function stop() {
+    map.off('pm:drawstart', onStart)
+    map.pm.disableDraw()
+  }
+  map.on('pm:drawstart', onStart)
+  // The layer that is being drawn exists already when drawing was enabled above.
+  const working = (map.pm.Draw as unknown as { Line: { _layer?: Leaflet.Layer } }).Line._layer
+  if (working) onStart({ workingLayer: working })
+  return stop
+}

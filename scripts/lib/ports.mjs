@@ -1,0 +1,45 @@
+// Ports on the loopback interface.
+import { createServer } from 'node:net'
+import { fail } from './say.mjs'
+
+const HOST = '127.0.0.1'
+
+/** True when nothing listens on this port. */
+export function portIsFree(port) {
+  return new Promise((resolve) => {
+    const server = createServer()
+    server.once('error', () => resolve(false))
+    server.listen({ port, host: HOST, exclusive: true }, () => server.close(() => resolve(true)))
+  })
+}
+
+/** Some ports that are free now and different from each other. */
+export async function freePorts(count) {
+  const servers = await Promise.all(Array.from({ length: count }, () => new Promise((resolve, reject) => {
+    const server = createServer()
+    server.once('error', reject)
+    server.listen({ port: 0, host: HOST }, () => resolve(server))
+  })))
+  const ports = servers.map(server => server.address().port)
+  await Promise.all(servers.map(server => new Promise(done => server.close(done))))
+  return ports
+}
+
+/**
+ * The port that a variable names.
+ * @throws a sentence when it is no port
+ */
+export function portFrom(variable, text) {
+  const port = Number(text)
+  if (!Number.isInteger(port) || port < 1024 || port > 65535) {
+    fail(`${variable}=${text} is not a port: give a number from 1024 to 65535.`)
+  }
+  return port
+}
+
+/** @throws a sentence naming the port and the variable that changes it */
+export async function requireFree(port, variable, what) {
+  if (await portIsFree(port)) return
+  fail(`Port ${port} for ${what} is taken by another program: stop that program, `
+    + `or choose another port, for example ${variable}=${port + 10} npm run up.`)
+}

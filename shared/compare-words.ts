@@ -1,0 +1,152 @@
+import { steepestStretch } from './compare-series'
+import type { ComparedLap, Comparison } from './schemas/compare'
+import { formatDate, formatDifference, formatLapTime, formatNumber } from './utils/format'
+
+/** A part of a sentence: running text, a figure, or the part on which the highlighter lies. */
+export interface Word { text: string, as: 'text' | 'figure' | 'mark' }
+
+/** What a comparison found, in sentences. */
+export interface Finding {
+  /** Who was slower by how much, and where most of it arose. */
+  lead: Word[]
+  /** The rest of the account, and what two laps cannot say. */
+  under: Word[]
+}
+
+/** A sector of both laps. Times are rounded to the millisecond first, so that what is shown adds up. */
+export interface SectorRow {
+  name: string
+  fromM: number
+  lapS: number | null
+  againstS: number | null
+  differenceS: number | null
+}
+
+const text = (words: string): Word => ({ text: words, as: 'text' })
+const figure = (words: string): Word => ({ text: words, as: 'figure' })
+const mark = (words: string): Word => ({ text: words, as: 'mark' })
+
+const NUMBERS = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve']
+
+/** Small numbers in words: 'no', 'one', ... 'twelve', then figures. */
+export function numberWord(count: number): string {
+  return NUMBERS[count] ?? String(count)
+}
+
+export function capital(words: string): string {
+  return words.charAt(0).toUpperCase() + words.slice(1)
+}
+
+/** Difference of two times as shown, s: each is rounded to 1 ms first. */
+export function shownDifferenceS(a: number, b: number): number {
+  return (Math.round(a * 1000) - Math.round(b * 1000)) / 1000
+}
+
+const seconds = (valueS: number) => formatNumber(Math.abs(valueS), 3)
+
+/** What to call the other lap beside the first: only what tells them apart. */
+export function nameAgainst(lap: ComparedLap, against: ComparedLap): string {
+  const name = `lap ${against.number}`
+  if (against.outing.id === lap.outing.id) return name
+  if (against.day.id === lap.day.id) return `${name} of outing ${against.outing.number}`
+  return `${name} of outing ${against.outing.number} on ${formatDate(against.day.date)}`
+}
+
+/** Keys of the two laps for tables and traces; with the outing where both have the same number. */
+export function lapKeys(lap: ComparedLap, against: ComparedLap): { lap: string, against: string } {
+  if (lap.number !== against.number) return { lap: `lap ${lap.number}`, against: `lap ${against.number}` }
+  if (lap.outing.number !== against.outing.number) {
+    return { lap: `lap ${lap.number}, outing ${lap.outing.number}`, against: `lap ${against.number}, outing ${against.outing.number}` }
+  }
+  return { lap: 'lap on the table', against: 'lap against' }
+}
+
+/** The sectors side by side; empty where the layout has no sector line. */
+export function sectorRows(comparison: Pick<Comparison, 'lap' | 'against' | 'sectorLinesM'>): SectorRow[] {
+  const { lap, against, sectorLinesM } = comparison
+  if (!sectorLinesM.length) return []
+  return [0, ...sectorLinesM].map((fromM, i) => {
+    const lapS = lap.sectorsS[i] ?? null
+    const againstS = against.sectorsS[i] ?? null
+    return { name: `sector ${i + 1}`, fromM, lapS, againstS, differenceS: lapS === null || againstS === null ? null : shownDifferenceS(lapS, againstS) }
+  })
+}
+
+/** A share in words, for shares that one place has of the whole difference. */
+function shareWords(share: number): string {
+  if (share >= 0.95) return 'Nearly all'
+  if (share >= 0.85) return 'Nine tenths'
+  if (share >= 0.7) return 'Three quarters'
+  if (share >= 0.6) return 'Two thirds'
+  return 'Half'
+}
+
+/** Where most of a difference arose, from the sectors; null when they do not tell. */
+function whereBySector(rows: SectorRow[], totalS: number): Word[] | null {
+  if (rows.length < 2 || rows.some(row => row.differenceS === null)) return null
+  const sign = totalS < 0 ? -1 : 1
+  const most = rows.reduce((best, row) => row.differenceS! * sign > best.differenceS! * sign ? row : best)
+  const share = most.differenceS! / totalS
+  const what = totalS > 0 ? 'lost' : 'gained'
+  if (share > 1.05) {
+    return [mark(`${capital(most.name)} alone ${totalS > 0 ? 'cost' : 'brought'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places cost some of it again.')]
+  }
+  if (share < 0.45) return [text(`The time was ${what} in several sectors, nowhere most of it.`)]
+  return [mark(`${shareWords(share)} of it was ${what} in ${most.name}`), text('.')]
+}
+
+/** Where most of a difference arose on a layout without sector lines: in an eighth of the lap. */
+function whereByStation(comparison: Comparison, totalS: number): Word[] | null {
+  const lengthM = comparison.stationM.at(-1) ?? 0
+  const found = steepestStretch(comparison.stationM, comparison.differenceS, lengthM / 8, totalS < 0 ? -1 : 1)
+  if (!found) return null
+  return [text(totalS > 0 ? 'Most was lost ' : 'Most was gained '), mark(`between ${Math.round(found.fromM)} m and ${Math.round(found.toM)} m`), text(': '), figure(`${seconds(found.changeS)} s`), text('.')]
+}
+
+/**
+ * The sentences that open a comparison. They say what was measured and where; never why, because two laps cannot tell.
+ */
+export function findingOf(comparison: Comparison): Finding {
+  const { lap, against } = comparison
+  const totalS = shownDifferenceS(lap.timeS, against.timeS)
+  const rows = sectorRows(comparison)
+  const lead = [text(`Lap ${lap.number} `), figure(`(${formatLapTime(lap.timeS)})`)]
+  if (totalS === 0) {
+    lead.push(text(` and ${nameAgainst(lap, against)} took the same time, to the millisecond.`))
+  }
+  else {
+    lead.push(text(' is '), figure(`${seconds(totalS)} s`), text(` ${totalS > 0 ? 'slower' : 'faster'} than ${nameAgainst(lap, against)}. `))
+    lead.push(...(whereBySector(rows, totalS) ?? whereByStation(comparison, totalS) ?? []))
+  }
+  return { lead, under: [...sectorWords(rows), ...doubtWords(lap), ...doubtWords(against), ...carWords(comparison)] }
+}
+
+function sectorWords(rows: SectorRow[]): Word[] {
+  const known = rows.filter(row => row.differenceS !== null)
+  if (!known.length) return []
+  const words: Word[] = []
+  for (const [i, row] of known.entries()) {
+    words.push(text(`${i ? ', ' : ''}${i ? row.name : capital(row.name)} `), figure(formatDifference(row.differenceS!)))
+  }
+  return [...words, text(' s. ')]
+}
+
+function doubtWords(lap: ComparedLap): Word[] {
+  const words: Word[] = []
+  if (lap.excluded) words.push(text(`Lap ${lap.number} of outing ${lap.outing.number} is excluded from its outing's figures. `))
+  if (lap.flags.includes('gap_at_line')) words.push(text(`Lap ${lap.number} of outing ${lap.outing.number} has a gap in the log where it crossed a line: its time is uncertain. `))
+  return words
+}
+
+function carWords(comparison: Comparison): Word[] {
+  const { lap, against, setupDifferences } = comparison
+  if (lap.car.id !== against.car.id) return [text('They are laps of two different cars.')]
+  const count = setupDifferences.length
+  if (!count) return [text('The setup sheets do not differ. Two laps cannot say whether the driver or the day made the difference.')]
+  return [text(`${capital(numberWord(count))} ${count === 1 ? 'setting differs' : 'settings differ'} between the setup sheets. Two laps cannot say whether the car, the driver or the day made the difference.`)]
+}
+
+/** The words of a sentence as plain text, for titles and tests. */
+export function plain(words: readonly Word[]): string {
+  return words.map(word => word.text).join('')
+}

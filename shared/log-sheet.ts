@@ -1,0 +1,38 @@
+import { capital, countWords, type Sentence } from './day-sheet'
+import type { ColumnCounts } from './log-columns'
+import type { Log } from './schemas/days'
+
+/** What a log's page opens with. `counts` are of its columns, when it has been looked into. */
+export function logSentence(
+  log: Pick<Log, 'status' | 'channels' | 'durationS' | 'problems'>,
+  counts: ColumnCounts | null,
+): Sentence {
+  switch (log.status) {
+    case 'uploading': return ['This log is still arriving.']
+    case 'queued': return ['This log waits to be read.']
+    case 'processing': return ['This log is being read.']
+    case 'refused': return ['This log gives no laps.']
+    case 'cancelled': return ['This log was cancelled.']
+    case 'mapping': return columnsSentence(counts)
+    case 'no_lines': return [...readSentence(log), ' It waits for the timing lines.']
+    case 'ready': return readSentence(log)
+  }
+}
+
+function columnsSentence(counts: ColumnCounts | null): Sentence {
+  if (!counts) return ['The columns of this log are not known yet.']
+  const matched = counts.used === counts.total
+    ? `All of its ${countWords(counts.total, 'column')} are matched`
+    : `${capital(countWords(counts.used, 'column'))} of ${counts.total} ${counts.used === 1 ? 'is' : 'are'} matched`
+  if (counts.doubtful === 0) return [`${matched}; none wants a second look.`]
+  return [`${matched}; ${countWords(counts.doubtful, 'guess wants', 'guesses want')} a look.`]
+}
+
+function readSentence(log: Pick<Log, 'channels' | 'durationS' | 'problems'>): Sentence {
+  const minutes = log.durationS === null ? null : Math.max(1, Math.round(log.durationS / 60))
+  const count = log.channels.length
+  const what: Sentence = count > 12 ? [{ fig: String(count) }, ' channels'] : [capital(countWords(count, 'channel'))]
+  const over: Sentence = minutes === null ? [] : [' over ', { fig: `${minutes} min` }]
+  const rows = log.problems.length === 0 ? ' without a problem in its rows.' : ', with something to know about its rows.'
+  return [...what, ...over, count === 1 ? ' is read' : ' are read', rows]
+}

@@ -1,0 +1,61 @@
+import type { LogProgress, LogSummary } from './schemas/days'
+import { LOG_STEPS, type LogStatus, type LogStep } from './schemas/logs'
+
+/** What a log is doing, for lists. */
+export const STATUS_WORDS: Record<LogStatus, string> = {
+  uploading: 'arriving',
+  mapping: 'columns to be confirmed',
+  queued: 'waiting to be read',
+  processing: 'being read',
+  no_lines: 'read; no timing line yet',
+  ready: 'read',
+  refused: 'refused',
+  cancelled: 'cancelled',
+}
+
+/** The steps of reading a log, as a person sees them. */
+export const STEP_WORDS: Record<LogStep, string> = {
+  read: 'Reading the rows',
+  clean: 'Checking times and positions',
+  project: 'Laying out the path in metres',
+  cross: 'Finding where it passes the timing lines',
+  lap: 'Cutting it into laps',
+  store: 'Writing laps and channels',
+}
+
+export type StepState = 'done' | 'now' | 'waiting'
+
+/** Whether a log is on its way and will change by itself. */
+export function isUnderWay(status: LogStatus): boolean {
+  return status === 'uploading' || status === 'queued' || status === 'processing'
+}
+
+/** Each step with its state, from what the worker reported last. An unknown step leaves all of them waiting. */
+export function stepStates(progress: Pick<LogProgress, 'status' | 'step'>): { step: LogStep, words: string, state: StepState }[] {
+  const now = progress.status === 'processing' ? LOG_STEPS.findIndex(step => step === progress.step) : -1
+  const finished = progress.status === 'ready' || progress.status === 'no_lines'
+  return LOG_STEPS.map((step, i) => ({
+    step,
+    words: STEP_WORDS[step],
+    state: finished || i < now ? 'done' : i === now ? 'now' : 'waiting',
+  }))
+}
+
+/** One line about a log on its way: the step in words and how far the whole is. */
+export function progressWords(progress: Pick<LogProgress, 'status' | 'step' | 'fraction'>): string {
+  if (progress.status !== 'processing') return STATUS_WORDS[progress.status]
+  const step = LOG_STEPS.find(known => known === progress.step)
+  return `${step ? STEP_WORDS[step] : 'Being read'}, ${Math.round(progress.fraction * 100)} %`
+}
+
+/** Rows a problem concerns, as it is written above it; empty where no row is to blame. */
+export function rowWords(problem: { row?: number | undefined, count?: number | undefined }): string {
+  if (problem.row === undefined) return ''
+  const count = problem.count ?? 1
+  return count > 1 ? `row ${problem.row} and ${count - 1} more` : `row ${problem.row}`
+}
+
+/** Logs that need a person before they can give laps. */
+export function waitingLogs<T extends Pick<LogSummary, 'status'>>(logs: readonly T[]): T[] {
+  return logs.filter(log => log.status === 'mapping' || log.status === 'no_lines')
+}

@@ -1,0 +1,20 @@
+import type { Action } from '#shared/access'
+import { may } from '#shared/access'
+import type { Me } from '#shared/schemas/people'
+
+/** Who is signed in, and in which team with which role. */
+export const useSessionStore = defineStore('session', () => {
+  /** The person, or null for a stranger. */
+  const me = ref<Me | null>(null)
+  /** The team whose sheets are open: the first one of the person. */
+  const team = computed(() => me.value?.teams[0] ?? null)
+  const teamId = computed(() => team.value?.id ?? '')
+  const role = computed(() => team.value?.role ?? null)
+
+  /** Whether to offer something: the server judges again by the same table. */
+  function can(action: Action): boolean {
+    return role.value !== null && may(role.value, action)
+  }
+
+  return { me, team, teamId, role, can }
+})
