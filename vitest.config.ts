@@ -55,6 +55,8 @@ function nuxtProject() {
     resolve: { alias: { 'vitest/environments': 'vitest/runtime' } },
     test: {
       name: 'nuxt', include: ['tests/nuxt/**/*.spec.ts'], environment: 'nuxt',
+      // Starting Nuxt takes more than the usual ten seconds on a busy machine.
+      hookTimeout: 60_000,
       environmentOptions: { nuxt: { domEnvironment: 'happy-dom' } },
     },
   })

@@ -137,7 +137,7 @@ export async function ensureCluster({ wanted, port, logFolder, throwaway = false
     await startServer(cluster, programs, port, throwaway)
   }
   if (cluster.moved && !throwaway) {
-    say(`User postgres cannot enter ${shown(dirname(wanted))}, so the database is in ${cluster.home}.`)
+    say(`User postgres cannot enter ${dirname(wanted)}, so the database is in ${cluster.home}.`)
   }
   return { ...cluster, port, programs, superuser: readFileSync(cluster.secret, 'utf8').trim() }
 }
