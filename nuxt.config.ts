@@ -36,6 +36,8 @@ export default defineNuxtConfig({
     public: { tileUrl: '', tileAttribution: '' },
   },
   tailwindcss: { cssPath: '~/assets/css/tailwind.css', viewer: false },
+  // Who is signed in comes with our own /api/me; the module would ask a second time on every page.
+  auth: { loadStrategy: 'none' },
   eslint: { config: { stylistic: true } },
   typescript: {
     strict: true,

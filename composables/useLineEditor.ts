@@ -1,17 +1,15 @@
 import type { Layout, SavedLine } from '#shared/schemas/circuits'
 import type { DraftLine, FlatLine, FlatTrace } from '#shared/lines'
-import { bestLoop, lineAt, lineWidthM, movedLine, offSquareDeg, orderedLines, stationOf, widenedLine } from '#shared/lines'
-import { makePlane } from '#shared/plane'
+import { lineAt, lineWidthM, movedLine, stationForNext, widenedLine } from '#shared/lines'
+import { useLineMeasures } from './useLineMeasures'
 
-/** A line as the sheet shows it. Station and squareness are null while there is no trace to measure along. */
-export interface ShownLine extends DraftLine {
-  widthM: number
-  stationM: number | null
-  offSquareDeg: number | null
-}
+type Ends = Pick<DraftLine, 'a' | 'b'>
 
 /** Width of a line that nobody has drawn yet, metres: across the track and the grass beside it. */
 const FIRST_WIDTH_M = 24
+
+/** Steps that can be taken back. */
+const HISTORY = 100
 
 /**
  * The lines of a layout while they are edited: what they are, where along the trace, undo, and whether they differ from
@@ -19,38 +17,15 @@ const FIRST_WIDTH_M = 24
  */
 export function useLineEditor(layout: Ref<Layout>, trace: Ref<FlatTrace | null>) {
   const lines = ref<DraftLine[]>(layout.value.lines.map(draftOf))
+  const measures = useLineMeasures(lines, trace)
   const stored = ref(written(lines.value))
   const history = shallowRef<DraftLine[][]>([])
   const selected = ref<string | null>(null)
-  let made = 0
-
-  /** The plane in which lines are moved: the trace's, or one at the first line when there is no trace. */
-  const plane = computed(() => trace.value?.plane ?? makePlane(lines.value[0]?.a ?? { latitudeDeg: 0, longitudeDeg: 0 }))
-  const flat = (line: DraftLine): FlatLine => ({ a: plane.value.flat(line.a), b: plane.value.flat(line.b) })
-  const start = computed(() => lines.value.find(line => line.kind === 'start_finish') ?? null)
-  const loop = computed(() => trace.value && bestLoop(trace.value, start.value && flat(start.value)))
-  const shown = computed<ShownLine[]>(() => lines.value.map((line) => {
-    const across = flat(line)
-    const measured = trace.value && loop.value
-    return {
-      ...line,
-      widthM: lineWidthM(across),
-      stationM: measured ? stationOf(trace.value!, loop.value!, across) : null,
-      offSquareDeg: measured ? offSquareDeg(trace.value!, loop.value!, across) : null,
-    }
-  }))
-  const dirty = computed(() => written(lines.value) !== stored.value)
-
-  /** Number the lines in driving order, along the loop that these lines make. Without a trace they keep their order. */
-  function inOrder(next: DraftLine[]): DraftLine[] {
-    const first = next.find(line => line.kind === 'start_finish')
-    const along = trace.value && bestLoop(trace.value, first ? flat(first) : null)
-    return orderedLines(next, line => along ? stationOf(trace.value!, along, flat(line)) : line.ordinal)
-  }
 
   function commit(next: DraftLine[]) {
-    history.value = [...history.value.slice(-99), lines.value]
-    lines.value = inOrder(next)
+    history.value = [...history.value.slice(1 - HISTORY), lines.value]
+    lines.value = measures.inOrder(next)
+    if (!next.some(line => line.key === selected.value)) selected.value = null
   }
 
   function undo() {
@@ -59,51 +34,6 @@ export function useLineEditor(layout: Ref<Layout>, trace: Ref<FlatTrace | null>)
     history.value = history.value.slice(0, -1)
     lines.value = before
     if (!before.some(line => line.key === selected.value)) selected.value = null
-  }
-
-  /** The first line of a layout is its start and finish line, every other one ends a sector. */
-  function add(ends: Pick<DraftLine, 'a' | 'b'>) {
-    const key = `new-${++made}`
-    commit([...lines.value, { key, kind: start.value ? 'sector' : 'start_finish', ordinal: 99, ...ends }])
-    selected.value = key
-  }
-
-  /** Add a line square to the trace: at station 0, or in the middle of the longest sector so far. */
-  function addSquare() {
-    if (!trace.value || !loop.value) return
-    const marks = shown.value.map(line => line.stationM ?? 0).sort((p, q) => p - q)
-    let atM = 0
-    let widest = -1
-    for (const [i, fromM] of marks.entries()) {
-      const toM = marks[i + 1] ?? loop.value.lengthM
-      if (toM - fromM > widest) [atM, widest] = [(fromM + toM) / 2, toM - fromM]
-    }
-    const line = lineAt(trace.value, loop.value, atM, FIRST_WIDTH_M)
-    add({ a: plane.value.globe(line.a), b: plane.value.globe(line.b) })
-  }
-
-  function replace(key: string, ends: Pick<DraftLine, 'a' | 'b'>) {
-    commit(lines.value.map(line => line.key === key ? { ...line, a: ends.a, b: ends.b } : line))
-  }
-
-  function reshape(key: string, change: (line: FlatLine) => FlatLine) {
-    const line = lines.value.find(one => one.key === key)
-    if (!line) return
-    const next = change(flat(line))
-    replace(key, { a: plane.value.globe(next.a), b: plane.value.globe(next.b) })
-  }
-
-  /** Put a line square to the trace at a station of the loop as it is now. */
-  function moveTo(key: string, stationM: number) {
-    if (!trace.value || !loop.value) return
-    const { lengthM, closed } = loop.value
-    const atM = closed ? ((stationM % lengthM) + lengthM) % lengthM : Math.min(lengthM, Math.max(0, stationM))
-    reshape(key, line => lineAt(trace.value!, loop.value!, atM, lineWidthM(line)))
-  }
-
-  function remove(key: string) {
-    commit(lines.value.filter(line => line.key !== key))
-    if (selected.value === key) selected.value = null
   }
 
   /** Take lines as they are stored: after saving, or in place of one's own. */
@@ -115,9 +45,59 @@ export function useLineEditor(layout: Ref<Layout>, trace: Ref<FlatTrace | null>)
   }
 
   return {
-    lines, shown, selected, loop, dirty, undo, add, addSquare, replace, moveTo, remove, takeStored,
+    lines, selected, undo, takeStored,
+    shown: measures.shown,
+    loop: measures.loop,
+    dirty: computed(() => written(lines.value) !== stored.value),
     canUndo: computed(() => history.value.length > 0),
-    hasStart: computed(() => start.value !== null),
+    hasStart: computed(() => measures.start.value !== null),
+    ...lineEdits(lines, trace, measures, commit, selected),
+  }
+}
+
+/** Everything that changes lines, each as one step that can be undone. */
+function lineEdits(
+  lines: Ref<DraftLine[]>, trace: Ref<FlatTrace | null>, measures: ReturnType<typeof useLineMeasures>,
+  commit: (next: DraftLine[]) => void, selected: Ref<string | null>,
+) {
+  const { plane, flat, start, loop, shown } = measures
+  const globe = (line: FlatLine): Ends => ({ a: plane.value.globe(line.a), b: plane.value.globe(line.b) })
+  let made = 0
+
+  /** The first line of a layout is its start and finish line, every other one ends a sector. */
+  function add(ends: Ends) {
+    const key = `new-${++made}`
+    commit([...lines.value, { key, kind: start.value ? 'sector' : 'start_finish', ordinal: lines.value.length, ...ends }])
+    selected.value = key
+  }
+
+  /** Add a line square to the trace, in the middle of the longest sector so far. */
+  function addSquare() {
+    if (!trace.value || !loop.value) return
+    const atM = stationForNext(shown.value.map(line => line.stationM ?? 0), loop.value.lengthM)
+    add(globe(lineAt(trace.value, loop.value, atM, FIRST_WIDTH_M)))
+  }
+
+  function replace(key: string, { a, b }: Ends) {
+    commit(lines.value.map(line => line.key === key ? { ...line, a, b } : line))
+  }
+
+  function reshape(key: string, change: (line: FlatLine) => FlatLine) {
+    const line = lines.value.find(one => one.key === key)
+    if (line) replace(key, globe(change(flat(line))))
+  }
+
+  /** Put a line square to the trace at a station of the loop as it is now. */
+  function moveTo(key: string, stationM: number) {
+    if (!trace.value || !loop.value) return
+    const { lengthM, closed } = loop.value
+    const atM = closed ? ((stationM % lengthM) + lengthM) % lengthM : Math.min(lengthM, Math.max(0, stationM))
+    reshape(key, line => lineAt(trace.value!, loop.value!, atM, lineWidthM(line)))
+  }
+
+  return {
+    add, addSquare, replace, moveTo,
+    remove: (key: string) => commit(lines.value.filter(line => line.key !== key)),
     widen: (key: string, widthM: number) => reshape(key, line => widenedLine(line, widthM)),
     nudge: (key: string, eastM: number, northM: number) => reshape(key, line => movedLine(line, eastM, northM)),
   }

@@ -1,6 +1,7 @@
 import type * as Leaflet from 'leaflet'
 import type { DraftLine } from '#shared/lines'
 import { lineName } from '#shared/lines'
+import type { ShownLine } from './useLineMeasures'
 
 type L = typeof Leaflet
 /** What is seen of a line follows what is held of it. */
@@ -18,7 +19,9 @@ const place = (point: DraftLine['a']): [number, number] => [point.latitudeDeg, p
 const point = (at: Leaflet.LatLng): DraftLine['a'] => ({ latitudeDeg: at.lat, longitudeDeg: at.lng })
 
 /** The timing lines on the map; the selected one can be dragged by its ends and as a whole. */
-export function drawLines(L: L, map: Leaflet.Map, lines: readonly (DraftLine & { stationM: number | null })[], selected: string | null, wishes: Wishes): Leaflet.LayerGroup {
+export function drawLines(
+  L: L, map: Leaflet.Map, lines: readonly ShownLine[], selected: string | null, wishes: Wishes,
+): Leaflet.LayerGroup {
   const group = L.layerGroup().addTo(map)
   const centre = middle(lines.flatMap(line => [line.a, line.b]))
   for (const line of lines) {
@@ -53,7 +56,8 @@ function middle(points: DraftLine['a'][]): DraftLine['a'] {
 
 /** Degrees of longitude are shorter than those of latitude. */
 function awayDeg(from: DraftLine['a'], to: DraftLine['a']): number {
-  return Math.hypot(to.latitudeDeg - from.latitudeDeg, (to.longitudeDeg - from.longitudeDeg) * Math.cos(from.latitudeDeg * Math.PI / 180))
+  const shrink = Math.cos(from.latitudeDeg * Math.PI / 180)
+  return Math.hypot(to.latitudeDeg - from.latitudeDeg, (to.longitudeDeg - from.longitudeDeg) * shrink)
 }
 
 /** The end of a line that lies on the outer side of the circuit: its name stands there, off the trace. */
@@ -82,7 +86,13 @@ function endsOf(grip: Leaflet.Polyline): Pick<DraftLine, 'a' | 'b'> {
 
 /** Handles at both ends, by the drawing library. */
 function dragEnds(grip: Leaflet.Polyline, follow: Follow, done: (ends: Pick<DraftLine, 'a' | 'b'>) => void) {
-  grip.pm.enable({ snappable: false, hideMiddleMarkers: true, preventMarkerRemoval: true, addVertexOnClick: false, allowSelfIntersection: true })
+  grip.pm.enable({
+    snappable: false,
+    hideMiddleMarkers: true,
+    preventMarkerRemoval: true,
+    addVertexOnClick: false,
+    allowSelfIntersection: true,
+  })
   grip.on('pm:markerdrag', () => follow(grip.getLatLngs() as Leaflet.LatLng[]))
   grip.on('pm:markerdragend', () => done(endsOf(grip)))
 }

@@ -62,9 +62,8 @@ export function useLogProgress(onSettled: (logId: string) => void) {
   }
 
   function unfollow(logId: string) {
-    const each = followed.get(logId)
-    each?.stream?.close()
-    clearTimeout(each?.timer)
+    followed.get(logId)?.stream?.close()
+    clearTimeout(followed.get(logId)?.timer)
     followed.delete(logId)
   }
 

@@ -23,7 +23,9 @@ export async function usePageData<T>(url: string | (() => string)) {
       // This page is never shown; the sign-in page takes its place.
       await new Promise(() => {})
     }
-    throw createError({ statusCode: problem.status || 503, message: problem.detail, fatal: true })
+    // An address that cannot be an identifier leads as little to a sheet as one that belongs to nobody.
+    const status = problem.status === 400 ? 404 : problem.status || 503
+    throw createError({ statusCode: status, message: problem.detail, fatal: true })
   }
   return { data: answer.data as Ref<T>, refresh: answer.refresh }
 }

@@ -47,7 +47,9 @@ function pieces(raw: LogTrace, place: (i: number) => LatLng): LatLng[][] {
  * @param planeNow the plane in which the squares are square
  * @param told is told the side of the squares, metres
  */
-export function drawGraticule(L: L, map: Leaflet.Map, planeNow: () => Plane, told: (sideM: number) => void): Leaflet.LayerGroup {
+export function drawGraticule(
+  L: L, map: Leaflet.Map, planeNow: () => Plane, told: (sideM: number) => void,
+): Leaflet.LayerGroup {
   const pane = map.getPane('graticule') ?? map.createPane('graticule')
   pane.style.zIndex = '150'
   const group = L.layerGroup().addTo(map)
@@ -61,7 +63,8 @@ export function drawGraticule(L: L, map: Leaflet.Map, planeNow: () => Plane, tol
     const high = plane.flat({ latitudeDeg: bounds.getNorth(), longitudeDeg: bounds.getEast() })
     const sideM = roundLengthM(Math.max(10, (high.xM - low.xM) / 7))
     const line = (x1: number, y1: number, x2: number, y2: number) => {
-      const ends = [plane.globe({ xM: x1, yM: y1 }), plane.globe({ xM: x2, yM: y2 })].map(at => [at.latitudeDeg, at.longitudeDeg] as LatLng)
+      const ends = [{ xM: x1, yM: y1 }, { xM: x2, yM: y2 }]
+        .map(at => plane.globe(at)).map(at => [at.latitudeDeg, at.longitudeDeg] as LatLng)
       L.polyline(ends, { renderer, pane: 'graticule', color: 'var(--grid)', weight: 1, interactive: false, pmIgnore: true }).addTo(group)
     }
     for (let x = Math.ceil(low.xM / sideM) * sideM; x <= high.xM; x += sideM) line(x, low.yM, x, high.yM)

@@ -67,7 +67,8 @@ async function seed(database: knex.Knex): Promise<void> {
   const { layout, ...circuit } = PLAN.circuit
   const circuitId = (await owner.must<{ id: string }>('POST', `/api/circuits${team}`, circuit)).id
   const layoutId = (await owner.must<{ id: string }>('POST', `/api/circuits/${circuitId}/layouts`, layout)).id
-  await owner.must('PUT', `/api/layouts/${layoutId}/lines`, { basedOnVersion: 0, lines: makeTrack().lines.map(({ kind, ordinal, a, b }) => ({ kind, ordinal, a, b })) })
+  const lines = makeTrack().lines.map(({ kind, ordinal, a, b }) => ({ kind, ordinal, a, b }))
+  await owner.must('PUT', `/api/layouts/${layoutId}/lines`, { basedOnVersion: 0, lines })
   const carId = (await owner.must<{ id: string }>('POST', `/api/cars${team}`, PLAN.car)).id
   const setupIds = await addSetups(owner, carId)
   for (const day of PLAN.days) await addDay(owner, day, { team, circuitId, layoutId, carId, setupIds, driverId: me.id })
@@ -76,13 +77,21 @@ async function seed(database: knex.Knex): Promise<void> {
 async function addSetups(owner: Client, carId: string): Promise<Map<number, string>> {
   const ids = new Map<number, string>()
   for (const { number, name, basedOn, sheet } of PLAN.setups) {
-    const { id } = await owner.must<{ id: string }>('POST', `/api/cars/${carId}/setups`, { name, basedOnId: basedOn === null ? null : ids.get(basedOn), sheet })
+    const basedOnId = basedOn === null ? null : ids.get(basedOn)
+    const { id } = await owner.must<{ id: string }>('POST', `/api/cars/${carId}/setups`, { name, basedOnId, sheet })
     ids.set(number, id)
   }
   return ids
 }
 
-interface Around { team: string, circuitId: string, layoutId: string, carId: string, setupIds: Map<number, string>, driverId: string }
+interface Around {
+  team: string
+  circuitId: string
+  layoutId: string
+  carId: string
+  setupIds: Map<number, string>
+  driverId: string
+}
 
 async function addDay(owner: Client, day: PlannedDay, around: Around): Promise<void> {
   const { date, name, notes } = day

@@ -40,8 +40,9 @@ export function makeClient(baseUrl: string, cookie = ''): Client {
     send,
     must: async <T>(method: string, path: string, body?: unknown) => {
       const answer = await send<T>(method, path, body)
-      if (answer.status >= 300) throw new Error(`${method} ${path} answered ${answer.status}: ${(answer.body as Problem).detail ?? answer.body}`)
-      return answer.body
+      if (answer.status < 300) return answer.body
+      const said = (answer.body as Problem).detail ?? answer.body
+      throw new Error(`${method} ${path} answered ${answer.status}: ${said}`)
     },
     upload: <T>(path: string, fileName: string, bytes: BlobPart) => {
       const form = new FormData()
@@ -53,7 +54,11 @@ export function makeClient(baseUrl: string, cookie = ''): Client {
 }
 
 /** Asks again and again until the answer is one that counts. */
-export async function waitFor<T>(what: string, ask: () => Promise<T | null | undefined | false>, timeoutMs = 60_000): Promise<T> {
+export async function waitFor<T>(
+  what: string,
+  ask: () => Promise<T | null | undefined | false>,
+  timeoutMs = 60_000,
+): Promise<T> {
   const end = Date.now() + timeoutMs
   while (Date.now() < end) {
     const found = await ask()

@@ -1,5 +1,11 @@
 import type { ComparedLap } from './schemas/compare'
 
+/** A channel by station; null where it is missing. */
+type Series = readonly (number | null)[]
+
+/** Points to draw: station and value. */
+export type Points = [number, number | null][]
+
 /** A braking zone of each lap that belong together; null where a lap has none near the other's. */
 export interface BrakingPair {
   /** Counts from 1 along the lap. */
@@ -14,8 +20,8 @@ export interface BrakingPair {
 const SAME_BRAKING_M = 80
 
 /**
- * Put the brakings of two laps side by side in order of station. Two belong together when each is the other's nearest and
- * they are within 80 m. O(n m), for some dozen zones.
+ * Put the brakings of two laps side by side in order of station. Two belong together when each is the other's nearest
+ * and they are within 80 m. O(n m), for some dozen zones.
  */
 export function pairBrakings(lap: ComparedLap['brakings'], against: ComparedLap['brakings']): BrakingPair[] {
   const nearest = (onsetM: number, among: ComparedLap['brakings']) => {
@@ -49,7 +55,7 @@ export function nearestStation(stationM: readonly number[], atM: number): number
 }
 
 /** Points of a trace for drawing, scaled; null leaves a gap. */
-export function tracePoints(stationM: readonly number[], values: readonly (number | null)[], scale: number): [number, number | null][] {
+export function tracePoints(stationM: readonly number[], values: Series, scale: number): Points {
   return stationM.map((atM, i) => {
     const value = values[i] ?? null
     return [atM, value === null ? null : value * scale]
@@ -57,7 +63,7 @@ export function tracePoints(stationM: readonly number[], values: readonly (numbe
 }
 
 /** Lowest and highest of the values that are there; null when none is. */
-export function extentOf(...series: (readonly (number | null)[])[]): { low: number, high: number } | null {
+export function extentOf(...series: Series[]): { low: number, high: number } | null {
   let low = Infinity
   let high = -Infinity
   for (const values of series) {
@@ -98,8 +104,10 @@ function tidy(value: number): number {
   return Number(value.toPrecision(12))
 }
 
-/** Station nearest to which two series are furthest apart, with the difference there (first minus second); null when no station has both. */
-export function widestApart(stationM: readonly number[], first: readonly (number | null)[], second: readonly (number | null)[]): { atM: number, by: number } | null {
+/** Where two series are furthest apart, and the first minus the second there; null when no station has both. */
+export function widestApart(
+  stationM: readonly number[], first: Series, second: Series,
+): { atM: number, by: number } | null {
   let found: { atM: number, by: number } | null = null
   for (let i = 0; i < stationM.length; i++) {
     const a = first[i] ?? null
@@ -116,7 +124,9 @@ export function widestApart(stationM: readonly number[], first: readonly (number
  * @param sign +1 to look for time lost, -1 for time gained
  * @returns null when nowhere it changes that way. O(n)
  */
-export function steepestStretch(stationM: readonly number[], differenceS: readonly (number | null)[], lengthM: number, sign: 1 | -1): { fromM: number, toM: number, changeS: number } | null {
+export function steepestStretch(
+  stationM: readonly number[], differenceS: Series, lengthM: number, sign: 1 | -1,
+): { fromM: number, toM: number, changeS: number } | null {
   let found: { fromM: number, toM: number, changeS: number } | null = null
   let end = 0
   for (let start = 0; start < stationM.length; start++) {
@@ -136,9 +146,9 @@ export function steepestStretch(stationM: readonly number[], differenceS: readon
  * A trace cut where it passes zero, so that what lies above can be drawn otherwise than what lies below. Both parts get
  * the point at which the straight line between two samples is zero; null separates their pieces.
  */
-export function splitAtZero(points: readonly [number, number | null][]): { above: [number, number | null][], below: [number, number | null][] } {
-  const above: [number, number | null][] = []
-  const below: [number, number | null][] = []
+export function splitAtZero(points: Readonly<Points>): { above: Points, below: Points } {
+  const above: Points = []
+  const below: Points = []
   for (const [i, [atM, value]] of points.entries()) {
     const before = points[i - 1]
     if (value !== null && before && before[1] !== null && before[1] * value < 0) {

@@ -38,7 +38,9 @@ const OUTLINE_POINTS = 600
 export function sheetOf(comparison: Comparison): ComparisonSheet {
   const { lap, against, stationM, pathM } = comparison
   const stride = Math.max(1, Math.floor(stationM.length / OUTLINE_POINTS))
-  const thin = (values: readonly number[]) => values.filter((_, i) => i % stride === 0 || i === values.length - 1).map(value => Math.round(value * 10) / 10)
+  const thin = (values: readonly number[]) => values
+    .filter((_, i) => i % stride === 0 || i === values.length - 1)
+    .map(value => Math.round(value * 10) / 10)
   return {
     lap: factsOf(lap),
     against: factsOf(against),

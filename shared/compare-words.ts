@@ -13,6 +13,9 @@ export interface Finding {
   under: Word[]
 }
 
+/** Of a comparison, what its sectors need. */
+type Sectored = Record<'lap' | 'against', Pick<ComparedLap, 'sectorsS'>> & Pick<Comparison, 'sectorLinesM'>
+
 /** A sector of both laps. Times are rounded to the millisecond first, so that what is shown adds up. */
 export interface SectorRow {
   name: string
@@ -62,7 +65,7 @@ export function lapKeys(lap: ComparedLap, against: ComparedLap): { lap: string, 
 }
 
 /** The sectors side by side; empty where the layout has no sector line. */
-export function sectorRows(comparison: Pick<Comparison, 'lap' | 'against' | 'sectorLinesM'>): SectorRow[] {
+export function sectorRows(comparison: Sectored): SectorRow[] {
   const { lap, against, sectorLinesM } = comparison
   if (!sectorLinesM.length) return []
   return [0, ...sectorLinesM].map((fromM, i) => {
@@ -89,7 +92,7 @@ function whereBySector(rows: SectorRow[], totalS: number): Word[] | null {
   const share = most.differenceS! / totalS
   const what = totalS > 0 ? 'lost' : 'gained'
   if (share > 1.05) {
-    return [mark(`${capital(most.name)} alone ${totalS > 0 ? 'cost' : 'brought'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places cost some of it again.')]
+    return [mark(`${capital(most.name)} alone ${totalS > 0 ? 'cost' : 'gained'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places lost some of it again.')]
   }
   if (share < 0.45) return [text(`The time was ${what} in several sectors, nowhere most of it.`)]
   return [mark(`${shareWords(share)} of it was ${what} in ${most.name}`), text('.')]
@@ -141,6 +144,7 @@ function doubtWords(lap: ComparedLap): Word[] {
 function carWords(comparison: Comparison): Word[] {
   const { lap, against, setupDifferences } = comparison
   if (lap.car.id !== against.car.id) return [text('They are laps of two different cars.')]
+  if (lap.outing.id === against.outing.id) return [text('Both were driven in one outing on one setup sheet. Two laps cannot say whether this is a habit or happened once.')]
   const count = setupDifferences.length
   if (!count) return [text('The setup sheets do not differ. Two laps cannot say whether the driver or the day made the difference.')]
   return [text(`${capital(numberWord(count))} ${count === 1 ? 'setting differs' : 'settings differ'} between the setup sheets. Two laps cannot say whether the car, the driver or the day made the difference.`)]

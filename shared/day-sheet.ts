@@ -1,6 +1,6 @@
 import { lapFigures, type LapFigures } from './laps'
 import type { Day, Lap, OutingSummary } from './schemas/days'
-import { formatCount, formatLapTime, formatNumber } from './utils/format'
+import { formatLapTime, formatNumber } from './utils/format'
 
 export type Weather = 'dry' | 'wet'
 
@@ -50,7 +50,11 @@ const NUMBERS = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'e
 /** A count as running text has it: in words up to twelve. */
 export function countWords(count: number, one: string, many = `${one}s`): string {
   const noun = count === 1 ? one : many
-  return count < NUMBERS.length ? `${NUMBERS[count]} ${noun}` : formatCount(count, one, many)
+  return `${numberWord(count)} ${noun}`
+}
+
+function numberWord(count: number): string {
+  return NUMBERS[count] ?? String(count)
 }
 
 export function capital(text: string): string {
@@ -100,7 +104,7 @@ export function outingSentence(outing: Pick<OutingSummary, 'number' | 'laps' | '
     const why = outing.logs.length === 0 ? ' has no log yet' : ` has no lap that counts yet${waitingWords([outing as OutingSummary])}`
     return [`Outing ${outing.number}${why}.`]
   }
-  const laps = counted.length === timed ? `all of its ${countWords(timed, 'lap')} count` : `${counted.length} of its ${countWords(timed, 'timed lap')} count`
+  const laps = counted.length === timed ? `all of its ${countWords(timed, 'lap')} count` : `${numberWord(counted.length)} of its ${countWords(timed, 'timed lap')} ${counted.length === 1 ? 'counts' : 'count'}`
   const left = sumOfBestS === null ? 0 : shownDifferenceS(best.timeS, sumOfBestS)
   return [
     `Outing ${outing.number} did `, { fig: formatLapTime(best.timeS) }, ` on lap ${best.number}; `,

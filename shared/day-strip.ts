@@ -14,6 +14,9 @@ export interface StripPoint {
 
 export interface StripLabel { x: number, y: number, anchor: 'start' | 'middle' | 'end', text: string }
 
+/** A reason beside its lap, with the room it takes from left to right. */
+export interface ReasonLabel extends StripLabel { from: number, to: number }
+
 /** A time marked on the axis of all strips. */
 export interface StripMark { key: 'sum' | 'best' | 'median', timeS: number, label: string, text: string }
 
@@ -48,23 +51,21 @@ function tenth(value: number): number {
  * Reasons beside the laps that are left out, each on the side where it covers fewer laps, cut to the room there is. A
  * reason that would run into another one is dropped: nothing on the strip is to be misread.
  */
-export function stripLabels(points: readonly StripPoint[], scale: Pick<StripScale, 'width'>): StripLabel[] {
-  const placed: Placed[] = []
+export function stripLabels(points: readonly StripPoint[], scale: Pick<StripScale, 'width'>): ReasonLabel[] {
+  const placed: ReasonLabel[] = []
   for (const point of points) {
     if (!point.reason) continue
     const sides = (['start', 'end'] as const).map(anchor => side(point, anchor, points, scale.width))
       .filter(option => option !== null)
-      .filter(option => placed.every(other => isClear(option, other)))
+      .filter(option => placed.every(other => isClear(option.label, other)))
       .sort((a, b) => a.cost - b.cost)
-    if (sides[0]) placed.push(sides[0])
+    if (sides[0]) placed.push(sides[0].label)
   }
-  return placed.map(each => each.label)
+  return placed
 }
 
-interface Placed { label: StripLabel, from: number, to: number }
-
-function isClear(a: Placed, b: Placed): boolean {
-  return Math.abs(a.label.y - b.label.y) > 13 || a.to < b.from - 4 || a.from > b.to + 4
+function isClear(a: ReasonLabel, b: ReasonLabel): boolean {
+  return Math.abs(a.y - b.y) > 13 || a.to < b.from - 4 || a.from > b.to + 4
 }
 
 function side(point: StripPoint, anchor: 'start' | 'end', points: readonly StripPoint[], width: number) {
@@ -76,7 +77,7 @@ function side(point: StripPoint, anchor: 'start' | 'end', points: readonly Strip
   const beside = points.filter(other => other !== point && Math.abs(other.y - point.y) <= STEP)
   const covered = beside.filter(other => other.x > from - 5 && other.x < to + 5).length
   const cost = covered * 10 + (text === point.reason ? 0 : 5) + (anchor === 'end' ? 1 : 0)
-  return { label: { x, y: point.y + 4, anchor, text }, from, to, cost }
+  return { label: { x, y: point.y + 4, anchor, text, from, to }, cost }
 }
 
 /** The marks' names above the axis, one below the other, turned inwards where they would leave the sheet. */

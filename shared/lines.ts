@@ -90,8 +90,8 @@ export function lineMiddle(line: FlatLine): PlanePoint {
 }
 
 /**
- * Every passage of the trace over the segment itself, never its extension, in the order driven. A passage that starts on
- * a sample is counted once. Good enough to show a station while a line is dragged; laps are timed by the server.
+ * Every passage of the trace over the segment itself, never its extension, in the order driven. A passage that starts
+ * on a sample is counted once. Good enough to show a station while a line is dragged; laps are timed by the server.
  * O(n).
  */
 export function passesOf(trace: FlatTrace, line: FlatLine): Pass[] {
@@ -196,8 +196,8 @@ export function lineAt(trace: FlatTrace, loop: Loop, stationM: number, widthM: n
 }
 
 /**
- * The station of a line: where the loop passes it nearest to its middle; where it does not pass it, the point of the loop
- * nearest to the middle of the line. A closed loop's end is its station 0. O(n).
+ * The station of a line: where the loop passes it nearest to its middle; where it does not pass it, the point of the
+ * loop nearest to the middle of the line. A closed loop's end is its station 0. O(n).
  */
 export function stationOf(trace: FlatTrace, loop: Loop, line: FlatLine): number {
   const toM = loop.fromM + loop.lengthM
@@ -235,7 +235,10 @@ export function movedLine(line: FlatLine, eastM: number, northM: number): FlatLi
 export function widenedLine(line: FlatLine, widthM: number): FlatLine {
   const middle = lineMiddle(line)
   const scale = widthM / (lineWidthM(line) || 1)
-  const reach = (point: PlanePoint) => ({ xM: middle.xM + (point.xM - middle.xM) * scale, yM: middle.yM + (point.yM - middle.yM) * scale })
+  const reach = (point: PlanePoint) => ({
+    xM: middle.xM + (point.xM - middle.xM) * scale,
+    yM: middle.yM + (point.yM - middle.yM) * scale,
+  })
   return { a: reach(line.a), b: reach(line.b) }
 }
 
@@ -245,6 +248,22 @@ export function orderedLines(lines: readonly DraftLine[], stationM: (line: Draft
   const sorted = [...lines].sort((p, q) => rank(p) - rank(q))
   let sector = 0
   return sorted.map(line => ({ ...line, ordinal: line.kind === 'start_finish' ? 0 : ++sector }))
+}
+
+/**
+ * Where to offer the next line: at the start of the loop when there is none yet, else in the middle of the longest
+ * sector.
+ * @param stationsM stations of the lines so far, in any order
+ */
+export function stationForNext(stationsM: readonly number[], lengthM: number): number {
+  const marks = [...stationsM].sort((p, q) => p - q)
+  let atM = 0
+  let widestM = -1
+  for (const [i, fromM] of marks.entries()) {
+    const toM = marks[i + 1] ?? lengthM
+    if (toM - fromM > widestM) [atM, widestM] = [(fromM + toM) / 2, toM - fromM]
+  }
+  return atM
 }
 
 /** 'Start and finish', 'Sector 1 ends', ... */

@@ -14,7 +14,7 @@ export function logSentence(
     case 'refused': return ['This log gives no laps.']
     case 'cancelled': return ['This log was cancelled.']
     case 'mapping': return columnsSentence(counts)
-    case 'no_lines': return [...readSentence(log), ' It waits for the timing lines.']
+    case 'no_lines': return [...readSentence(log), ' The timing lines are still missing.']
     case 'ready': return readSentence(log)
   }
 }
@@ -33,6 +33,6 @@ function readSentence(log: Pick<Log, 'channels' | 'durationS' | 'problems'>): Se
   const count = log.channels.length
   const what: Sentence = count > 12 ? [{ fig: String(count) }, ' channels'] : [capital(countWords(count, 'channel'))]
   const over: Sentence = minutes === null ? [] : [' over ', { fig: `${minutes} min` }]
-  const rows = log.problems.length === 0 ? ' without a problem in its rows.' : ', with something to know about its rows.'
+  const rows = log.problems.length === 0 ? ', without a problem in the rows.' : ', with something to know about the rows.'
   return [...what, ...over, count === 1 ? ' is read' : ' are read', rows]
 }

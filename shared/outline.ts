@@ -19,7 +19,9 @@ export interface Outline {
  * @param pathM metres east and north, at least two points
  * @param width of the picture; its height follows, at most `maxHeight`
  */
-export function fitOutline(pathM: { x: readonly number[], y: readonly number[] }, width: number, maxHeight: number, padding: number): Outline {
+export function fitOutline(
+  pathM: { x: readonly number[], y: readonly number[] }, width: number, maxHeight: number, padding: number,
+): Outline {
   let [left, right, bottom, top] = [Infinity, -Infinity, Infinity, -Infinity]
   for (const [i, x] of pathM.x.entries()) {
     const y = pathM.y[i]!
@@ -33,7 +35,10 @@ export function fitOutline(pathM: { x: readonly number[], y: readonly number[] }
   const scale = Math.min((width - 2 * padding) / wideM, (maxHeight - 2 * padding) / highM)
   const height = highM * scale + 2 * padding
   const slack = (width - wideM * scale) / 2
-  const at = (index: number) => ({ x: slack + (pathM.x[index]! - left) * scale, y: padding + (top - pathM.y[index]!) * scale })
+  const at = (index: number) => ({
+    x: slack + (pathM.x[index]! - left) * scale,
+    y: padding + (top - pathM.y[index]!) * scale,
+  })
   const across = (index: number, half: number) => {
     const before = at(Math.max(0, index - 3))
     const after = at(Math.min(pathM.x.length - 1, index + 3))

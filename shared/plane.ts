@@ -35,7 +35,8 @@ function wrapDeg(longitudeDeg: number): number {
 
 /**
  * The tangent plane at a point, through earth-centred coordinates on the WGS 84 ellipsoid at zero height, for drawing
- * and moving timing lines. `globe` is the inverse of `flat` by Newton's method, to better than a millimetre within 20 km.
+ * and moving timing lines. `globe` is the inverse of `flat` by Newton's method, to better than a millimetre within
+ * 20 km.
  * @see https://en.wikipedia.org/wiki/Geographic_coordinate_conversion (ECEF to ENU)
  */
 export function makePlane(origin: GlobePoint): Plane {

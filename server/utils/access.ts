@@ -18,7 +18,8 @@ export type Subject = keyof typeof TABLES
 
 /**
  * Who may use a route: anyone, any signed-in person, or a member of the team to which its subject belongs whose role
- * allows the action. `of: 'team'` takes the team from the query (`teamId`), anything else from the row named in the path.
+ * allows the action. `of: 'team'` takes the team from the query (`teamId`), anything else from the row that the path
+ * names.
  */
 export type Who = 'anyone' | 'person' | { action: Action, of: 'team' | Subject }
 
@@ -45,7 +46,12 @@ export async function loadPerson(db: Transaction, userId: string, epoch: number 
 }
 
 /** The team of the subject and the person's role there; 404 when it is not theirs, 403 when the role is not enough. */
-export async function findPlace(db: Transaction, person: Person, who: Exclude<Who, string>, ids: { teamId?: string, id?: string }): Promise<Place> {
+export async function findPlace(
+  db: Transaction,
+  person: Person,
+  who: Exclude<Who, string>,
+  ids: { teamId?: string, id?: string },
+): Promise<Place> {
   let teamId = ids.teamId
   if (who.of !== 'team') {
     const row = await db(TABLES[who.of]).where('id', ids.id ?? null).first<{ team_id: string } | undefined>('team_id')

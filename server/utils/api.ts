@@ -1,11 +1,12 @@
 import { randomUUID } from 'node:crypto'
 import { defineEventHandler, getQuery, getRequestHeader, getRouterParams, setResponseHeader, setResponseStatus, type H3Event } from 'h3'
-import { z } from 'zod'
+import type { z } from 'zod'
 import { findPlace, loadPerson, type Person, type Place, type Who } from './access'
 import { asNobody, asPerson, type Transaction } from './db/transactions'
 import { badInput, ProblemError, problemOf, signInNeeded } from './problems'
 import { readJson } from './read-json'
 
+type Schema = z.ZodType | undefined
 type Parsed<S> = S extends z.ZodType ? z.output<S> : undefined
 
 interface Input<P, Q, B> {
@@ -27,46 +28,50 @@ interface Definition<P, Q, B, W extends Who, A> {
 
 type Asked<W> = W extends 'anyone' ? object : W extends 'person' ? { person: Person } : { person: Person } & Place
 
+/** Opens one short transaction as the person of the request. */
+export type ShortTransaction = <T>(run: (db: Transaction) => Promise<T>) => Promise<T>
+
 interface StreamDefinition<P, Q, W extends Who> {
   params?: P
   query?: Q
   who: W
-  /** Runs outside any transaction; `transaction` opens a short one as the person. */
-  stream: (context: Input<P, Q, undefined> & Asked<W> & { transaction: <T>(run: (db: Transaction) => Promise<T>) => Promise<T> }) => Promise<unknown>
+  /** Runs outside any transaction. */
+  stream: (context: Input<P, Q, undefined> & Asked<W> & { transaction: ShortTransaction }) => Promise<unknown>
 }
 
 /**
  * The one way to make a route: who asks, is the input right, do one thing, answer. The handler runs in one short
  * transaction as the person; errors are answered as problem details (RFC 9457).
  */
-export function defineApiHandler<P extends z.ZodType | undefined, Q extends z.ZodType | undefined, B extends z.ZodType | undefined, W extends Who, A>(definition: Definition<P, Q, B, W, A>) {
+export function defineApiHandler<P extends Schema, Q extends Schema, B extends Schema, W extends Who, A>(
+  definition: Definition<P, Q, B, W, A>,
+) {
   return defineEventHandler(event => answer(event, async () => {
-    const input = await readInput(event, definition)
-    if (definition.body) {
-      guardOrigin(event)
-      input.body = parse('body', definition.body, await readJson(event))
-    }
-    else if (!['GET', 'HEAD'].includes(event.method)) {
-      guardOrigin(event)
-    }
-    const body = await inTransaction(event, definition.who, input, (db, asked) => definition.handler({ ...input, ...asked, db } as never))
+    guardOrigin(event)
+    const input = readInput(event, definition)
+    if (definition.body) input.body = parse('body', definition.body, await readJson(event))
+    const body = await inTransaction(event, definition.who, input, (db, asked) =>
+      definition.handler({ ...input, ...asked, db } as never))
     setResponseStatus(event, definition.status ?? (body === undefined ? 204 : 200))
     return body ?? null
   }))
 }
 
 /** The same for uploads and server-sent events, which must not hold a transaction while they run. */
-export function defineStreamHandler<P extends z.ZodType | undefined, Q extends z.ZodType | undefined, W extends Exclude<Who, 'anyone'>>(definition: StreamDefinition<P, Q, W>) {
+export function defineStreamHandler<P extends Schema, Q extends Schema, W extends Exclude<Who, 'anyone'>>(
+  definition: StreamDefinition<P, Q, W>,
+) {
   return defineEventHandler(event => answer(event, async () => {
-    if (event.method !== 'GET') guardOrigin(event)
-    const input = await readInput(event, definition)
+    guardOrigin(event)
+    const input = readInput(event, definition)
     const asked = await inTransaction(event, definition.who, input, async (_db, found) => found)
     const { person } = asked as { person: Person }
-    return definition.stream({ ...input, ...asked, transaction: (run: (db: Transaction) => Promise<unknown>) => asPerson(person.id, run) } as never)
+    const transaction: ShortTransaction = run => asPerson(person.id, run)
+    return definition.stream({ ...input, ...asked, transaction } as never)
   }))
 }
 
-async function readInput(event: H3Event, definition: { params?: z.ZodType, query?: z.ZodType }) {
+function readInput(event: H3Event, definition: { params?: z.ZodType, query?: z.ZodType }) {
   return {
     event,
     params: definition.params ? parse('path', definition.params, getRouterParams(event)) : undefined,
@@ -81,7 +86,12 @@ function parse(where: 'body' | 'query' | 'path', schema: z.ZodType, value: unkno
   return result.data
 }
 
-async function inTransaction<T>(event: H3Event, who: Who, input: { params: unknown, query: unknown }, run: (db: Transaction, asked: object) => Promise<T>): Promise<T> {
+async function inTransaction<T>(
+  event: H3Event,
+  who: Who,
+  input: { params: unknown, query: unknown },
+  run: (db: Transaction, asked: object) => Promise<T>,
+): Promise<T> {
   if (who === 'anyone') return asNobody(db => run(db, {}))
   const session = await getUserSession(event)
   const userId = session.user?.id
@@ -96,6 +106,7 @@ async function inTransaction<T>(event: H3Event, who: Who, input: { params: unkno
 
 /** A page of another site must not act with this person's cookie. */
 function guardOrigin(event: H3Event): void {
+  if (event.method === 'GET' || event.method === 'HEAD') return
   const site = getRequestHeader(event, 'sec-fetch-site')
   if (site === 'cross-site' || site === 'same-site') {
     throw new ProblemError(403, 'From another site', 'This request came from a page of another site and was not carried out.')

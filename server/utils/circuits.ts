@@ -54,17 +54,24 @@ export async function readLayout(db: Transaction, layoutId: string): Promise<Lay
 
 /** Circuits of a team with their layouts, by name; or the one asked for. */
 export async function readCircuits(db: Transaction, teamId: string, id?: string): Promise<Circuit[]> {
-  const circuits = await db('circuits').where('team_id', teamId).modify(query => id && query.where('id', id)).orderBy('name')
+  const circuits = await db('circuits').where('team_id', teamId)
+    .modify(query => id && query.where('id', id)).orderBy('name')
     .select<{ id: string, team_id: string, name: string, time_zone: string, notes: string }[]>()
   const layouts = await db('layouts').whereIn('circuit_id', circuits.map(circuit => circuit.id)).orderBy('name')
-    .select<(LayoutRow & { line_count: number })[]>('*', db.raw('(select count(*)::int from timing_lines t where t.team_id = layouts.team_id and t.layout_id = layouts.id) as line_count'))
+    .select<(LayoutRow & { line_count: number })[]>('*', db.raw(`(select count(*)::int from timing_lines t
+      where t.team_id = layouts.team_id and t.layout_id = layouts.id) as line_count`))
   return circuits.map(circuit => ({
     id: circuit.id,
     teamId: circuit.team_id,
     name: circuit.name,
     timeZone: circuit.time_zone,
     notes: circuit.notes,
-    layouts: layouts.filter(layout => layout.circuit_id === circuit.id)
-      .map(layout => ({ id: layout.id, name: layout.name, direction: layout.direction, lengthM: layout.length_m, lineCount: layout.line_count })),
+    layouts: layouts.filter(layout => layout.circuit_id === circuit.id).map(layout => ({
+      id: layout.id,
+      name: layout.name,
+      direction: layout.direction,
+      lengthM: layout.length_m,
+      lineCount: layout.line_count,
+    })),
   }))
 }

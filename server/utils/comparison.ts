@@ -70,17 +70,19 @@ async function readLapRow(db: Transaction, id: string): Promise<LapRow> {
 /** The samples of a lap and a little around it, read as slices of its channels. */
 async function readTrace(db: Transaction, lap: LapRow): Promise<LapTrace> {
   if (lap.kind !== 'timed' || lap.log_id === null || lap.first_sample === null || lap.last_sample === null) {
-    throw new ProblemError(422, 'Nothing to compare', `Lap ${lap.number} of outing ${lap.outing_number} is not a timed lap with a log, so it has no trace.`)
+    const name = `Lap ${lap.number} of outing ${lap.outing_number}`
+    throw new ProblemError(422, 'Nothing to compare', `${name} is not a timed lap with a log, so it has no trace.`)
   }
   const margin = Math.ceil(MARGIN_S * (lap.rate_hz ?? 1)) + 2
   const first = Math.max(0, lap.first_sample - margin)
-  const channels = await readChannels(db, lap.team_id, lap.log_id, CHANNELS, { first, count: lap.last_sample + margin - first + 1 })
+  const slice = { first, count: lap.last_sample + margin - first + 1 }
+  const channels = await readChannels(db, lap.team_id, lap.log_id, CHANNELS, slice)
   const samples = (name: string) => channels.get(name)!.samples
   return {
     timeS: samples('time'),
     latitudeDeg: samples('latitude'),
     longitudeDeg: samples('longitude'),
-    channels: Object.fromEntries([...channels].filter(([, channel]) => channel.samples instanceof Float32Array).map(([name, channel]) => [name, channel.samples])),
+    channels: Object.fromEntries([...channels].map(([name, channel]) => [name, channel.samples])),
     startS: lap.start_s,
     lapTimeS: lap.time_s,
   }
@@ -103,7 +105,8 @@ export async function readComparison(db: Transaction, lapId: string, againstId: 
     against: lapBody(against, compared.b),
     differenceS: rounded(compared.differenceS, 4),
     sectorLinesM: sectorLines(faster.row, faster.own, compared.stationM),
-    setupDifferences: sheetDifferences(against.sheet, lap.sheet).map(({ label, unit, a, b }) => ({ label, unit, lap: b, against: a })),
+    setupDifferences: sheetDifferences(against.sheet, lap.sheet)
+      .map(({ label, unit, a, b }) => ({ label, unit, lap: b, against: a })),
     sameSettings: countSameSettings(lap.sheet, against.sheet),
   }
 }

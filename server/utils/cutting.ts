@@ -7,6 +7,9 @@ import { matchLaps } from './laps/recut'
 import { readLines } from './circuits'
 import type { Transaction } from './db/transactions'
 
+/** What a new cut changes of a lap that was there before; the rest is a person's. */
+const CUT_COLUMNS = ['outing_id', 'number', 'kind', 'start_s', 'time_s', 'first_sample', 'last_sample', 'flags']
+
 export interface LogPath {
   timeS: Float64Array
   latitudeDeg: Float64Array
@@ -48,7 +51,7 @@ export async function cutPart(db: Transaction, part: LogPart, path: LogPath): Pr
   await storeLaps(db, part, path, cut.laps)
   await db('log_parts').where('id', part.id).update({ warnings: JSON.stringify(cut.warnings) })
   if (layout.length_m === null) {
-    const lengthM = bestLapLength(path, lines[0]?.a, cut.laps)
+    const lengthM = bestLapLength(path, cut.laps)
     if (lengthM !== null) await db('layouts').where('id', part.layout_id).update({ length_m: lengthM })
   }
   return lines.length ? 'ready' : 'no_lines'
@@ -72,9 +75,10 @@ async function storeLaps(db: Transaction, part: LogPart, path: LogPath, laps: re
     first_sample: Math.max(0, firstAfter(path.timeS, lap.startS) - 1),
     last_sample: Math.min(path.timeS.length - 1, firstAfter(path.timeS, lap.startS + lap.timeS)),
     flags: JSON.stringify(lap.flags),
-  }))).onConflict(['team_id', 'id']).merge(['outing_id', 'number', 'kind', 'start_s', 'time_s', 'first_sample', 'last_sample', 'flags'])
+  }))).onConflict(['team_id', 'id']).merge(CUT_COLUMNS)
   await db('lap_sectors').where('team_id', part.team_id).whereIn('lap_id', ids).delete()
-  const sectors = laps.flatMap((lap, i) => lap.sectorsS.map((time, j) => ({ team_id: part.team_id, lap_id: ids[i], ordinal: j + 1, time_s: time })))
+  const sectors = laps.flatMap((lap, i) => lap.sectorsS.map((time, j) =>
+    ({ team_id: part.team_id, lap_id: ids[i], ordinal: j + 1, time_s: time })))
   if (sectors.length) await db('lap_sectors').insert(sectors)
 }
 
@@ -90,11 +94,12 @@ function firstAfter(timeS: Float64Array, instantS: number): number {
   return low
 }
 
-function bestLapLength(path: LogPath, origin: { latitudeDeg: number, longitudeDeg: number } | undefined, laps: readonly CutLap[]): number | null {
+/** Distance driven in the fastest lap without a flag, metres. */
+function bestLapLength(path: LogPath, laps: readonly CutLap[]): number | null {
   const timed = laps.filter(lap => lap.kind === 'timed' && !lap.flags.length)
-  if (!origin || !timed.length) return null
+  if (!timed.length) return null
   const best = timed.reduce((a, b) => b.timeS < a.timeS ? b : a)
-  const plane = makePlane(origin.latitudeDeg, origin.longitudeDeg)
+  const plane = makePlane(path.latitudeDeg[0]!, path.longitudeDeg[0]!)
   const { xM, yM } = toPlane(plane, path.latitudeDeg, path.longitudeDeg)
   return lapPath(path.timeS, xM, yM, best.startS, best.timeS).stationM.at(-1)!
 }

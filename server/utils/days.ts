@@ -5,12 +5,23 @@ import { notFound, ProblemError } from './problems'
 
 const PAGE = 50
 
+interface DayRow {
+  id: string
+  team_id: string
+  date: string
+  name: string
+  notes: string
+  circuit_id: string
+  circuit_name: string
+  time_zone: string
+}
+
 export async function readDay(db: Transaction, id: string): Promise<Day> {
   const row = await db('track_days as d').join('circuits as c', 'c.id', 'd.circuit_id').where('d.id', id)
-    .first<{ id: string, team_id: string, date: string, name: string, notes: string, circuit_id: string, circuit_name: string, time_zone: string } | undefined>(
-      'd.*', 'c.name as circuit_name', 'c.time_zone')
+    .first<DayRow | undefined>('d.*', 'c.name as circuit_name', 'c.time_zone')
   if (!row) throw notFound('day')
-  const layouts = await db('layouts').where('circuit_id', row.circuit_id).orderBy('name').select<{ id: string, name: string }[]>('id', 'name')
+  const layouts = await db('layouts').where('circuit_id', row.circuit_id).orderBy('name')
+    .select<{ id: string, name: string }[]>('id', 'name')
   return {
     id: row.id,
     teamId: row.team_id,
@@ -26,7 +37,11 @@ export async function readDay(db: Transaction, id: string): Promise<Day> {
  * Days of a team, newest first, a page at a time.
  * @param cursor `date,id` of the last day of the page before, as it was answered there
  */
-export async function listDays(db: Transaction, teamId: string, cursor: string | undefined): Promise<{ items: DayListItem[], next: string | null }> {
+export async function listDays(
+  db: Transaction,
+  teamId: string,
+  cursor: string | undefined,
+): Promise<{ items: DayListItem[], next: string | null }> {
   const timed = 'l.kind = \'timed\' and not l.excluded'
   const rows = await db('track_days as d').join('circuits as c', 'c.id', 'd.circuit_id').where('d.team_id', teamId)
     .modify((query) => {

@@ -42,17 +42,23 @@ export async function stopJobQueue(): Promise<void> {
   if (running) await (await running).stop({ graceful: true, wait: true, timeout: 3000 })
 }
 
+interface Connection { query: (text: string, values: unknown[]) => Promise<{ rows: unknown[] }> }
+
 /** Sends a job inside a transaction: with it the job comes into being, or with it the job is rolled back. */
 export async function sendJob<N extends JobName>(db: Transaction, name: N, data: Jobs[N]): Promise<void> {
   const boss = await jobQueue()
-  const connection = await db.client.acquireConnection() as { query: (text: string, values: unknown[]) => Promise<{ rows: unknown[] }> }
+  const connection = await db.client.acquireConnection() as Connection
   await boss.send(name, data, { db: { executeSql: (text, values) => connection.query(text, values) } })
 }
 
 /** Takes jobs off the queue one at a time until the process ends. `lastTry` is true when a failure is final. */
-export async function workOn<N extends JobName>(name: N, run: (data: Jobs[N], lastTry: boolean) => Promise<void>): Promise<void> {
+export async function workOn<N extends JobName>(
+  name: N,
+  run: (data: Jobs[N], lastTry: boolean) => Promise<void>,
+): Promise<void> {
   const boss = await jobQueue({ supervise: true })
-  await boss.work<Jobs[N]>(name, { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: 0.5 }, async ([job]) => {
+  const options = { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: 0.5 } as const
+  await boss.work<Jobs[N]>(name, options, async ([job]) => {
     if (!job) return
     try {
       await run(job.data, job.retryCount >= RETRY_LIMIT)

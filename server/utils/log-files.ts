@@ -31,22 +31,13 @@ export interface LogSink {
 }
 
 /**
- * A stream that keeps a log: gzip is recognised by its first bytes and taken off, the uncompressed bytes are counted and
- * hashed on their way to the disk. A bomb is stopped at the limit, before it can fill anything.
+ * A stream that keeps a log: gzip is recognised by its first bytes and taken off, the uncompressed bytes are counted
+ * and hashed on their way to the disk. A bomb is stopped at the limit, before it can fill anything.
  */
 export async function openLogSink(key: string): Promise<LogSink> {
   const place = placeOf(key)
   await mkdir(path.dirname(place), { recursive: true })
-  const hash = createHash('sha256')
-  let sizeBytes = 0
-  const counter = new Transform({
-    transform(chunk: Buffer, _encoding, done) {
-      sizeBytes += chunk.length
-      if (sizeBytes > LOG_LIMIT_BYTES) return done(tooLarge())
-      hash.update(chunk)
-      done(null, chunk)
-    },
-  })
+  const { counter, counted } = makeCounter()
   const entry = new PassThrough()
   let flow: Promise<void> | undefined
   const begin = (first: Buffer) => {
@@ -82,13 +73,28 @@ export async function openLogSink(key: string): Promise<LogSink> {
     },
   })
   const done = new Promise<StoredFile>((resolve, reject) => {
-    stream.once('finish', () => resolve({ sha256: hash.digest('hex'), sizeBytes }))
+    stream.once('finish', () => resolve(counted()))
     stream.once('error', error => reject(asProblem(error)))
     stream.once('close', () => reject(new ProblemError(400, 'Upload cut off', 'The upload ended before the file was whole. Nothing was kept; send it again.')))
   })
   // Whoever awaits `done` learns of it; until then it must not count as unhandled.
   done.catch(() => undefined)
   return { stream, done }
+}
+
+/** Passes bytes on, counted and hashed; more than the limit is an error. */
+function makeCounter(): { counter: Transform, counted: () => StoredFile } {
+  const hash = createHash('sha256')
+  let sizeBytes = 0
+  const counter = new Transform({
+    transform(chunk: Buffer, _encoding, done) {
+      sizeBytes += chunk.length
+      if (sizeBytes > LOG_LIMIT_BYTES) return done(tooLarge())
+      hash.update(chunk)
+      done(null, chunk)
+    },
+  })
+  return { counter, counted: () => ({ sha256: hash.digest('hex'), sizeBytes }) }
 }
 
 function tooLarge(): ProblemError {

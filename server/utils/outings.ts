@@ -30,7 +30,11 @@ interface OutingRow {
   notes: string
 }
 
-type LogRow = { outing_id: string, id: string, file_name: string, size_bytes: number, status: LogSummary['status'], problem: LogSummary['problem'] }
+interface LogRow extends Pick<LogSummary, 'id' | 'status' | 'problem'> {
+  outing_id: string
+  file_name: string
+  size_bytes: number
+}
 
 function outingRows(db: Transaction) {
   return db('outings as o')
@@ -58,7 +62,7 @@ export async function readOutingsOfDay(db: Transaction, dayId: string): Promise<
   return rows.map((row, i) => {
     const before = rows.slice(0, i).findLast(other => other.car_id === row.car_id)
     const setupChanges = before
-      ? sheetDifferences(before.sheet, row.sheet).map(change => ({ label: change.label, unit: change.unit, from: change.a, to: change.b }))
+      ? sheetDifferences(before.sheet, row.sheet).map(({ label, unit, a, b }) => ({ label, unit, from: a, to: b }))
       : []
     return { ...summaryOf(row, laps.get(row.id) ?? [], logs), setupChanges }
   })
@@ -88,8 +92,7 @@ function summaryOf(row: OutingRow, laps: OutingSummary['laps'], logs: LogRow[]):
     hotPressures: hotPressuresSchema.parse(row.hot_pressures),
     notes: row.notes,
     laps,
-    logs: logs.filter(log => log.outing_id === row.id)
-      .map(log => ({ id: log.id, fileName: log.file_name, sizeBytes: log.size_bytes, status: log.status, problem: log.problem })),
+    logs: logs.filter(log => log.outing_id === row.id).map(summaryOfLog),
   }
 }
 
@@ -107,4 +110,8 @@ export function outingColumns(body: OutingBody) {
     hot_pressures: JSON.stringify(body.hotPressures),
     notes: body.notes,
   }
+}
+
+function summaryOfLog({ id, file_name: fileName, size_bytes: sizeBytes, status, problem }: LogRow): LogSummary {
+  return { id, fileName, sizeBytes, status, problem }
 }

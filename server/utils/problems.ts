@@ -2,13 +2,11 @@ import type { z } from 'zod'
 import type { Problem } from '../../shared/schemas/common'
 import { LapsError } from './laps/errors'
 
-type FieldError = { path: string, message: string }
-
 /** An error that a person can act on. The wrapper of the routes answers it as RFC 9457 problem details. */
 export class ProblemError extends Error {
   readonly problem: Problem
 
-  constructor(status: number, title: string, detail: string, more: { errors?: FieldError[], see?: string, type?: string } = {}) {
+  constructor(status: number, title: string, detail: string, more: Partial<Pick<Problem, 'errors' | 'see' | 'type'>> = {}) {
     super(detail)
     this.name = 'ProblemError'
     this.problem = { type: more.type ?? 'about:blank', title, status, detail, errors: more.errors, see: more.see }
@@ -65,7 +63,8 @@ export function problemOf(error: unknown): ProblemError | null {
   const { code, constraint } = error as DatabaseError
   const clash = constraint ? CLASHES[constraint] : undefined
   if (clash && (code === '23505' || code === '23503')) {
-    return new ProblemError(clash.status, clash.title, clash.detail, { errors: clash.path ? [{ path: clash.path, message: clash.detail }] : undefined })
+    const errors = clash.path ? [{ path: clash.path, message: clash.detail }] : undefined
+    return new ProblemError(clash.status, clash.title, clash.detail, { errors })
   }
   if (code === '42501') return new ProblemError(403, 'Not yours to do', 'Your role in this team does not allow this.')
   return null

@@ -1,13 +1,12 @@
 import { EventEmitter } from 'node:events'
-import pg from 'pg'
 import type { LogProgress } from '../../shared/schemas/days'
-import { databaseUrl, pool } from './db/pool'
+import { listenTo, type Listener } from './db/listen'
+import { pool } from './db/pool'
 
 const CHANNEL = 'lapwright_progress'
-const RECONNECT_MS = 1000
 
-interface Listening { events: EventEmitter, stop: () => Promise<void> }
-const held = globalThis as typeof globalThis & { lapwrightProgress?: Listening }
+interface Following { events: EventEmitter, listener: Listener }
+const held = globalThis as typeof globalThis & { lapwrightProgress?: Following }
 
 /**
  * Tells every web process how far a log is. By a statement of its own: inside the transaction that writes the laps a
@@ -19,56 +18,24 @@ export async function tellProgress(progress: LogProgress): Promise<void> {
 
 /** Calls back with each progress of one log until the returned function is called. */
 export function followLog(logId: string, tell: (progress: LogProgress) => void): () => void {
-  held.lapwrightProgress ??= listen()
+  held.lapwrightProgress ??= follow()
   const { events } = held.lapwrightProgress
   events.on(logId, tell)
   return () => events.off(logId, tell)
 }
 
 export async function stopListening(): Promise<void> {
-  const listening = held.lapwrightProgress
+  const following = held.lapwrightProgress
   held.lapwrightProgress = undefined
-  await listening?.stop()
+  await following?.listener.stop()
 }
 
-/** One connection of this process listens for all its streams, and connects again when the database was away. */
-function listen(): Listening {
+/** One connection of this process feeds all its streams. */
+function follow(): Following {
   const events = new EventEmitter().setMaxListeners(0)
-  let client: pg.Client | undefined
-  let timer: NodeJS.Timeout | undefined
-  let stopped = false
-
-  const again = () => {
-    if (stopped || timer) return
-    timer = setTimeout(() => {
-      timer = undefined
-      void connect()
-    }, RECONNECT_MS)
-  }
-  const connect = async () => {
-    client = new pg.Client({ connectionString: databaseUrl(), application_name: 'lapwright progress' })
-    client.on('error', again)
-    client.on('end', again)
-    client.on('notification', (message) => {
-      const progress = JSON.parse(message.payload ?? '{}') as LogProgress
-      events.emit(progress.logId, progress)
-    })
-    try {
-      await client.connect()
-      await client.query(`listen ${CHANNEL}`)
-    }
-    catch {
-      again()
-    }
-  }
-  void connect()
-
-  return {
-    events,
-    stop: async () => {
-      stopped = true
-      clearTimeout(timer)
-      await client?.end().catch(() => undefined)
-    },
-  }
+  const listener = listenTo(CHANNEL, (payload) => {
+    const progress = JSON.parse(payload) as LogProgress
+    events.emit(progress.logId, progress)
+  })
+  return { events, listener }
 }

@@ -86,7 +86,9 @@ export const circuitSchema = z.object({
   name: z.string(),
   timeZone: z.string(),
   notes: z.string(),
-  layouts: z.array(layoutSchema.pick({ id: true, name: true, direction: true, lengthM: true }).extend({ lineCount: z.int() })),
+  layouts: z.array(layoutSchema
+    .pick({ id: true, name: true, direction: true, lengthM: true })
+    .extend({ lineCount: z.int() })),
 })
 export type Circuit = z.infer<typeof circuitSchema>
 
@@ -112,7 +114,12 @@ export type LineTrialBody = z.infer<typeof lineTrialBody>
 export const lineTrialSchema = z.object({
   timedLaps: z.int(),
   bestS: z.number().nullable(),
-  lines: z.array(z.object({ ordinal: z.int(), crossed: z.int(), ignored: z.int(), offSquareDeg: z.number().nullable() })),
+  lines: z.array(z.object({
+    ordinal: z.int(),
+    crossed: z.int(),
+    ignored: z.int(),
+    offSquareDeg: z.number().nullable(),
+  })),
   warnings: z.array(z.object({ code: z.string(), message: z.string() })),
 })
 export type LineTrial = z.infer<typeof lineTrialSchema>

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { idSchema } from './common'
 import { conditionsSchema, hotPressuresSchema } from './days'
+import { settingSchema } from './setups'
 
 export const compareQuery = z.object({ lap: idSchema, against: idSchema })
 
@@ -56,7 +57,12 @@ export const comparisonSchema = z.object({
   /** Sector lines of the layout, by the station at which the faster lap crossed them. */
   sectorLinesM: z.array(z.number()),
   /** Settings that differ between the two sheets, and how many are the same. */
-  setupDifferences: z.array(z.object({ label: z.string(), unit: z.string(), lap: z.union([z.number(), z.string(), z.null()]), against: z.union([z.number(), z.string(), z.null()]) })),
+  setupDifferences: z.array(z.object({
+    label: z.string(),
+    unit: z.string(),
+    lap: settingSchema,
+    against: settingSchema,
+  })),
   sameSettings: z.int(),
 })
 export type Comparison = z.infer<typeof comparisonSchema>

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { dateSchema, idSchema, instantSchema, notesSchema, optionalNumber, optionalPressureKpa } from './common'
-import { CORNERS } from './setups'
+import { settingSchema } from './setups'
 import { LOG_STATUSES, logPreviewSchema, logProblemSchema, columnMapSchema } from './logs'
 
 export const WETNESS = ['dry', 'damp', 'wet'] as const
@@ -16,9 +16,12 @@ export const conditionsSchema = z.object({
 export type Conditions = z.infer<typeof conditionsSchema>
 
 /** Pressures measured on return, kPa above ambient. */
-export const hotPressuresSchema = z.object(
-  Object.fromEntries(CORNERS.map(corner => [corner, optionalPressureKpa()])) as Record<(typeof CORNERS)[number], ReturnType<typeof optionalNumber>>,
-)
+export const hotPressuresSchema = z.object({
+  fl: optionalPressureKpa(),
+  fr: optionalPressureKpa(),
+  rl: optionalPressureKpa(),
+  rr: optionalPressureKpa(),
+})
 
 export const dayBody = z.object({
   circuitId: idSchema,
@@ -90,7 +93,18 @@ export const logSchema = logSummarySchema.extend({
   remembered: z.boolean(),
   problems: z.array(logProblemSchema),
   channels: z.array(z.object({ name: z.string(), label: z.string(), unit: z.string(), rateHz: z.number() })),
-  outing: z.object({ id: idSchema, number: z.int(), dayId: idSchema, date: z.string(), circuitName: z.string(), layoutId: idSchema, layoutName: z.string(), lineCount: z.int(), carName: z.string(), driverName: z.string() }).nullable(),
+  outing: z.object({
+    id: idSchema,
+    number: z.int(),
+    dayId: idSchema,
+    date: z.string(),
+    circuitName: z.string(),
+    layoutId: idSchema,
+    layoutName: z.string(),
+    lineCount: z.int(),
+    carName: z.string(),
+    driverName: z.string(),
+  }).nullable(),
   /** Warnings of the cut: lines never crossed, and the like. */
   warnings: z.array(logProblemSchema),
 })
@@ -122,7 +136,7 @@ export const outingSummarySchema = z.object({
   laps: z.array(lapSchema),
   logs: z.array(logSummarySchema),
   /** Settings that differ from the outing before with the same car. */
-  setupChanges: z.array(z.object({ label: z.string(), unit: z.string(), from: z.union([z.number(), z.string(), z.null()]), to: z.union([z.number(), z.string(), z.null()]) })),
+  setupChanges: z.array(z.object({ label: z.string(), unit: z.string(), from: settingSchema, to: settingSchema })),
 })
 export type OutingSummary = z.infer<typeof outingSummarySchema>
 
@@ -132,7 +146,12 @@ export const daySchema = z.object({
   date: z.string(),
   name: z.string(),
   notes: z.string(),
-  circuit: z.object({ id: idSchema, name: z.string(), timeZone: z.string(), layouts: z.array(z.object({ id: idSchema, name: z.string() })) }),
+  circuit: z.object({
+    id: idSchema,
+    name: z.string(),
+    timeZone: z.string(),
+    layouts: z.array(z.object({ id: idSchema, name: z.string() })),
+  }),
   outings: z.array(outingSummarySchema),
 })
 export type Day = z.infer<typeof daySchema>
@@ -150,7 +169,14 @@ export type DayListItem = z.infer<typeof dayListItemSchema>
 
 export const outingSchema = outingSummarySchema.omit({ setupChanges: true }).extend({
   teamId: idSchema,
-  day: z.object({ id: idSchema, date: z.string(), name: z.string(), circuitId: idSchema, circuitName: z.string(), timeZone: z.string() }),
+  day: z.object({
+    id: idSchema,
+    date: z.string(),
+    name: z.string(),
+    circuitId: idSchema,
+    circuitName: z.string(),
+    timeZone: z.string(),
+  }),
 })
 export type Outing = z.infer<typeof outingSchema>
 

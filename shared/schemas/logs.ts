@@ -37,7 +37,7 @@ export type ColumnMap = z.infer<typeof columnMapSchema>
 /** One column of a file as it was found, with the guess. */
 export const previewColumnSchema = columnChoiceSchema.extend({
   firstValues: z.array(z.string()),
-  /** sure: the header names the channel and its unit; likely: one of them is a guess; unknown: kept under its own name. */
+  /** sure: the header names channel and unit; likely: one of them is a guess; unknown: kept under its own name. */
   confidence: z.enum(['sure', 'likely', 'unknown']),
   /** A sentence that says what the guess rests on. */
   reason: z.string(),

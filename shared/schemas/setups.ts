@@ -39,6 +39,9 @@ export const sheetSchema = z.object({
 export type Sheet = z.infer<typeof sheetSchema>
 export type SheetCorner = z.infer<typeof cornerSchema>
 
+/** A setting as lists of changes show it; null where nothing was filled in. */
+export const settingSchema = z.union([z.number(), z.string(), z.null()])
+
 /** A sheet with every field there and nothing filled in. */
 export function emptySheet(): Sheet {
   const corner = () => cornerSchema.parse({})

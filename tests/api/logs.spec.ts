@@ -172,8 +172,8 @@ describe('a log', () => {
     const told: LogProgress[] = []
     const reading = (async () => {
       let text = ''
-      for await (const chunk of response.body!.pipeThrough(new TextDecoderStream())) {
-        text += chunk
+      for await (const chunk of response.body as unknown as AsyncIterable<Uint8Array>) {
+        text += Buffer.from(chunk).toString()
         told.splice(0, told.length, ...text.split('\n').filter(line => line.startsWith('data:') && line.endsWith('}')).map(line => JSON.parse(line.slice(5)) as LogProgress))
       }
     })().catch(() => undefined)

@@ -46,7 +46,9 @@ export async function axe(page: Page): Promise<string[]> {
   // As a function of the page's own, since its content security policy allows no foreign script.
   await page.evaluate(axeSource)
   return page.evaluate(async () => {
-    const { axe } = window as unknown as { axe: { run: (context: Document, options: object) => Promise<{ violations: { id: string, help: string, nodes: { target: unknown[], failureSummary?: string }[] }[] }> } }
+    interface Violation { id: string, help: string, nodes: { target: unknown[], failureSummary?: string }[] }
+    interface Axe { run: (context: Document, options: object) => Promise<{ violations: Violation[] }> }
+    const { axe } = window as unknown as { axe: Axe }
     const { violations } = await axe.run(document, { runOnly: { type: 'tag', values: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'] } })
     return violations.flatMap(({ id, help, nodes }) => nodes.map(node => `${id}: ${help}: ${node.target.join(' ')} ${node.failureSummary ?? ''}`))
   })

@@ -53,22 +53,34 @@ export function fixture(name: string): Buffer<ArrayBuffer> {
   return Buffer.from(readFileSync(new URL(`../../fixtures/${name}`, import.meta.url)))
 }
 
-interface LineFeature { properties: { role: SavedLine['kind'], order?: number }, geometry: { coordinates: [[number, number], [number, number]] } }
+interface LineFeature {
+  properties: { role: SavedLine['kind'], order?: number }
+  geometry: { coordinates: [[number, number], [number, number]] }
+}
 
 /** Timing lines of a GeoJSON file of fixtures/, as PUT /api/layouts/:id/lines takes them. */
 export function fixtureLines(name: string) {
   const { features } = JSON.parse(fixture(name).toString()) as { features: LineFeature[] }
   const point = ([longitudeDeg, latitudeDeg]: [number, number]) => ({ latitudeDeg, longitudeDeg })
-  return features.map(({ properties, geometry: { coordinates: [a, b] } }) => ({ kind: properties.role, ordinal: properties.order ?? 0, a: point(a), b: point(b) }))
+  return features.map(({ properties: { role, order }, geometry: { coordinates: [a, b] } }) =>
+    ({ kind: role, ordinal: order ?? 0, a: point(a), b: point(b) }))
 }
 
-export async function saveLines(garage: Garage, lines: ReturnType<typeof fixtureLines>): Promise<Layout & { recutting: number }> {
-  const { linesVersion } = await garage.client.must<Layout>('GET', `/api/layouts/${garage.layoutId}`)
-  return garage.client.must('PUT', `/api/layouts/${garage.layoutId}/lines`, { basedOnVersion: linesVersion, lines })
+export async function saveLines(
+  { client, layoutId }: Garage,
+  lines: ReturnType<typeof fixtureLines>,
+): Promise<Layout & { recutting: number }> {
+  const { linesVersion } = await client.must<Layout>('GET', `/api/layouts/${layoutId}`)
+  return client.must('PUT', `/api/layouts/${layoutId}/lines`, { basedOnVersion: linesVersion, lines })
 }
 
 /** Uploads a log, takes the columns as they were guessed, and waits until it has been read. */
-export async function uploadAndRead({ client }: Garage, outingId: string, fileName: string, bytes: BlobPart): Promise<Log> {
+export async function uploadAndRead(
+  { client }: Garage,
+  outingId: string,
+  fileName: string,
+  bytes: BlobPart,
+): Promise<Log> {
   const sent = await client.upload<{ id: string, status: string, detail?: string }>(`/api/outings/${outingId}/logs`, fileName, bytes)
   if (sent.status !== 201) throw new Error(`upload answered ${sent.status}: ${sent.body.detail}`)
   if (sent.body.status === 'mapping') await confirmColumns(client, sent.body.id)

@@ -24,7 +24,8 @@ const TIME_ROUNDING_S = 1e-6
  * where missing; those without any value go.
  * @param read as it comes from the reader; it is not changed
  * @throws {LapsError} 'time_runs_back' with the line when more than 1 % of the rows (and more than one) step back,
- *   'no_time' | 'no_position' when none is left or the positions move as no car does, 'too_short' below 10 usable samples. O(n).
+ *   'no_time' | 'no_position' when none is left or the positions move as no car does, 'too_short' below 10 usable
+ *   samples. O(n).
  */
 export function cleanLog(read: ReadLog): CleanLog {
   const problems = createProblems()
@@ -45,7 +46,11 @@ export function cleanLog(read: ReadLog): CleanLog {
   const good = jumps.size === 0 ? fixes : fixes.filter(row => !jumps.has(row))
   const [first, last] = [good[0], good.at(-1)]
   if (first === undefined || last === undefined) throw new LapsError('no_position', 'No row of the log has a usable position.', lines[0])
-  if (last - first + 1 < FEWEST_SAMPLES) throw new LapsError('too_short', `Only ${last - first + 1} rows have both a time and a position; at least ${FEWEST_SAMPLES} are needed.`, lines[first])
+  const usable = last - first + 1
+  if (usable < FEWEST_SAMPLES) {
+    const needed = `at least ${FEWEST_SAMPLES} are needed`
+    throw new LapsError('too_short', `Only ${usable} rows have both a time and a position; ${needed}.`, lines[first])
+  }
   refuseWildPositions(track, good, lines[first]!)
   reportEnds(lines, first, last, problems)
 
@@ -138,7 +143,10 @@ function reportPositions({ latitudeDeg, longitudeDeg }: Track, lines: Uint32Arra
 }
 
 function refuseWildPositions(track: Track, fixes: readonly number[], line: number): void {
-  const speedMps = median(fixes.slice(1).map((row, i) => distanceM(track, fixes[i]!, row) / (track.timeS[row]! - track.timeS[fixes[i]!]!)))
+  const speedMps = median(fixes.slice(1).map((row, i) => {
+    const before = fixes[i]!
+    return distanceM(track, before, row) / (track.timeS[row]! - track.timeS[before]!)
+  }))
   if (speedMps <= FASTEST_MPS) return
   throw new LapsError('no_position', `The positions move at ${Math.round(speedMps * 3.6)} km/h, which no car does. Check which columns are latitude, longitude and time, and their units.`, line)
 }

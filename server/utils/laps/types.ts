@@ -19,7 +19,8 @@ export interface ReadLog {
 
 /**
  * A channel as it is stored and as everything after cleaning sees it: float64 for time, latitude and longitude, float32
- * for the rest. The laps are cut from these values and no others, so that cutting again from storage is equal bit for bit.
+ * for the rest. The laps are cut from these values and no others, so that cutting again from storage is equal bit for
+ * bit.
  */
 export interface Channel {
   name: string

@@ -38,7 +38,10 @@ export function someComparison(changes: Partial<Comparison> = {}): Comparison {
     stationM: [0, 100, 200, 300, 400],
     pathM: { x: [0, 100, 100, 0, 0], y: [0, 0, 100, 100, 1] },
     lap: someLap(),
-    against: someLap({ id: ID(4), number: 4, timeS: 90.869, outing: { id: ID(101), number: 1, startedAt: null }, sectorsS: [30, 31, 29.869] }),
+    against: someLap({
+      id: ID(4), number: 4, timeS: 90.869, sectorsS: [30, 31, 29.869],
+      outing: { id: ID(101), number: 1, startedAt: null },
+    }),
     differenceS: [0, 0.1, 0.5, 0.55, 0.613],
     sectorLinesM: [120, 260],
     setupDifferences: [],

@@ -2,6 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { extentOf, nearestStation, pairBrakings, roundAxis, splitAtZero, steepestStretch, tracePoints, widestApart } from '../../../shared/compare-series'
 
+const rising = (a: number, b: number) => a - b
 const braking = (onsetM: number) => ({ onsetM, onsetSpeedMps: 40, releaseM: onsetM + 60, peakMps2: 9 })
 
 describe('pairBrakings', () => {
@@ -16,11 +17,13 @@ describe('pairBrakings', () => {
   })
 
   it('never uses a braking twice and loses none', () => {
-    const onsets = fc.uniqueArray(fc.integer({ min: 0, max: 3000 }), { maxLength: 14 }).map(list => list.sort((a, b) => a - b).map(braking))
+    const onsets = fc.uniqueArray(fc.integer({ min: 0, max: 3000 }), { maxLength: 14 })
+      .map(list => list.sort(rising).map(braking))
     fc.assert(fc.property(onsets, onsets, (mine, other) => {
       const rows = pairBrakings(mine, other)
-      expect(rows.flatMap(row => row.lap ? [row.lap.onsetM] : []).sort((a, b) => a - b)).toEqual(mine.map(one => one.onsetM))
-      expect(rows.flatMap(row => row.against ? [row.against.onsetM] : []).sort((a, b) => a - b)).toEqual(other.map(one => one.onsetM))
+      const onsetsOf = (side: 'lap' | 'against') => rows.flatMap(row => row[side]?.onsetM ?? []).sort(rising)
+      expect(onsetsOf('lap')).toEqual(mine.map(one => one.onsetM))
+      expect(onsetsOf('against')).toEqual(other.map(one => one.onsetM))
       for (const row of rows) if (row.earlierM !== null) expect(Math.abs(row.earlierM)).toBeLessThanOrEqual(80)
     }))
   })
@@ -28,7 +31,8 @@ describe('pairBrakings', () => {
 
 describe('nearestStation', () => {
   it('is the nearest of all', () => {
-    const stations = fc.uniqueArray(fc.integer({ min: 0, max: 5000 }), { minLength: 1, maxLength: 60 }).map(list => list.sort((a, b) => a - b))
+    const stations = fc.uniqueArray(fc.integer({ min: 0, max: 5000 }), { minLength: 1, maxLength: 60 })
+      .map(list => list.sort(rising))
     fc.assert(fc.property(stations, fc.double({ min: -100, max: 5100, noNaN: true }), (stationM, atM) => {
       const found = Math.abs(stationM[nearestStation(stationM, atM)]! - atM)
       expect(found).toBe(Math.min(...stationM.map(one => Math.abs(one - atM))))

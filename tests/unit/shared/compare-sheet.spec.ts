@@ -9,10 +9,15 @@ describe('sheetOf', () => {
     expect(Object.keys(sheet.against)).not.toContain('lateral')
     expect(sheet.lengthM).toBe(400)
     expect(sheet.totalS).toBe(0.613)
+    expect(sheet.startM).toBe(0)
   })
 
   it('writes the finding of each trace', () => {
-    const lap = someLap({ speed: [40, 25, 20, 30, 40], longitudinal: [1, -9.80665, -2, 3, 2], lateral: [0, -8, 4.903325, -9, 0] })
+    const lap = someLap({
+      speed: [40, 25, 20, 30, 40],
+      longitudinal: [1, -9.80665, -2, 3, 2],
+      lateral: [0, -8, 4.903325, -9, 0],
+    })
     expect(sheetOf(someComparison({ lap })).titles).toEqual({
       speed: 'most apart at 100 m, 18 km/h slower',
       difference: '+0.61 at 400 m, +0.613 at the line',

@@ -39,6 +39,7 @@ describe('findingOf', () => {
     expect(under({ setupDifferences: [setting] })).toContain('One setting differs between')
     expect(under()).toContain('The setup sheets do not differ. Two laps cannot say')
     expect(under({ lap: someLap({ excluded: true, flags: ['gap_at_line'] }) })).toMatch(/is excluded.*its time is uncertain/)
+    expect(under({ against: someLap() })).toContain('a habit or happened once')
     expect(under({ against: someLap({ car: { id: 'x', name: 'No. 12' } }) })).toContain('two different cars')
   })
 
@@ -68,7 +69,8 @@ describe('sectorRows', () => {
     expect(rows.map(row => row.name)).toEqual(['sector 1', 'sector 2', 'sector 3'])
     expect(rows.map(row => row.fromM)).toEqual([0, 120, 260])
     // Sums of thousandths in binary: 1e-9 is far below what is shown.
-    expect(rows.reduce((sum, row) => sum + row.differenceS!, 0)).toBeCloseTo(shownDifferenceS(lap.timeS, against.timeS), 9)
+    const sumS = rows.reduce((sum, row) => sum + row.differenceS!, 0)
+    expect(sumS).toBeCloseTo(shownDifferenceS(lap.timeS, against.timeS), 9)
   })
 })
 

@@ -77,7 +77,7 @@ describe('outingSentence', () => {
   it('says the best lap, how many count, and what the best sectors together would have given', () => {
     const laps = [lap(1, 91, { sectorsS: [46, 45] }), lap(2, 90.5, { sectorsS: [45, 45.5] }), lap(3, 95, { excluded: true, excludedReason: 'flag' })]
     expect(text(outingSentence(outing(3, [], { laps }))))
-      .toBe('Outing 3 did 1:30.500 on lap 2; 2 of its three timed laps count. Its best sectors together are 0.500 s faster.')
+      .toBe('Outing 3 did 1:30.500 on lap 2; two of its three timed laps count. Its best sectors together are 0.500 s faster.')
   })
 
   it('leaves the sectors out when the best lap holds them all', () => {

@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import type { DraftLine, FlatLine, FlatTrace } from '../../../shared/lines'
-import { bestLoop, flattenTrace, lineAt, lineMiddle, lineName, lineWidthM, movedLine, offSquareDeg, orderedLines, passesOf, pointAtWay, roundLengthM, stationOf, widenedLine } from '../../../shared/lines'
+import { bestLoop, flattenTrace, lineAt, lineMiddle, lineName, lineWidthM, movedLine, offSquareDeg, orderedLines, passesOf, pointAtWay, roundLengthM, stationForNext, stationOf, widenedLine } from '../../../shared/lines'
 import { makePlane } from '../../../shared/plane'
 
 const ORIGIN = { latitudeDeg: 54.4, longitudeDeg: -2.9 }
@@ -91,7 +91,9 @@ describe('lineAt and stationOf', () => {
   const loop = bestLoop(trace, spoke(0.001))
 
   it('are the inverse of each other, and the line is square and as wide as asked', () => {
-    fc.assert(fc.property(fc.double({ min: 1, max: ROUND_M - 2, noNaN: true }), fc.double({ min: 4, max: 60, noNaN: true }), (stationM, widthM) => {
+    const station = fc.double({ min: 1, max: ROUND_M - 2, noNaN: true })
+    const width = fc.double({ min: 4, max: 60, noNaN: true })
+    fc.assert(fc.property(station, width, (stationM, widthM) => {
       const line = lineAt(trace, loop, stationM, widthM)
       expect(Math.abs(stationOf(trace, loop, line) - stationM)).toBeLessThan(0.05)
       expect(Math.abs(lineWidthM(line) - widthM)).toBeLessThan(1e-9)
@@ -146,6 +148,15 @@ describe('orderedLines', () => {
     const stations: Record<string, number> = { late: 1935, start: 3000, early: 895 }
     const ordered = orderedLines([line('late', 'sector'), line('start', 'start_finish'), line('early', 'sector')], l => stations[l.key]!)
     expect(ordered.map(l => [l.key, l.ordinal])).toEqual([['start', 0], ['early', 1], ['late', 2]])
+  })
+})
+
+describe('stationForNext', () => {
+  it('is the start at first, then the middle of the longest sector', () => {
+    expect(stationForNext([], 3000)).toBe(0)
+    expect(stationForNext([0], 3000)).toBe(1500)
+    expect(stationForNext([1000, 0], 3000)).toBe(2000)
+    expect(stationForNext([0, 2000], 3000)).toBe(1000)
   })
 })
 

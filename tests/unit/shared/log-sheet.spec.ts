@@ -22,8 +22,8 @@ describe('logSentence', () => {
   })
 
   it('says what was read and whether rows had problems', () => {
-    expect(says('ready')).toBe('Eight channels over 21 min are read without a problem in its rows.')
-    expect(says('ready', null, [{ code: 'bad_cell', message: 'x' }])).toBe('Eight channels over 21 min are read, with something to know about its rows.')
-    expect(says('no_lines')).toContain('It waits for the timing lines.')
+    expect(says('ready')).toBe('Eight channels over 21 min are read, without a problem in the rows.')
+    expect(says('ready', null, [{ code: 'bad_cell', message: 'x' }])).toBe('Eight channels over 21 min are read, with something to know about the rows.')
+    expect(says('no_lines')).toContain('The timing lines are still missing.')
   })
 })

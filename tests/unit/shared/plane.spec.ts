@@ -3,7 +3,8 @@ import { Geodesic } from 'geographiclib-geodesic'
 import { describe, expect, it } from 'vitest'
 import { makePlane } from '../../../shared/plane'
 
-const near = fc.record({ x: fc.double({ min: -3000, max: 3000, noNaN: true }), y: fc.double({ min: -3000, max: 3000, noNaN: true }) })
+const metres = fc.double({ min: -3000, max: 3000, noNaN: true })
+const near = fc.record({ x: metres, y: metres })
 const origin = fc.record({
   latitudeDeg: fc.double({ min: -85, max: 85, noNaN: true }),
   longitudeDeg: fc.double({ min: -180, max: 180, noNaN: true }),
@@ -11,12 +12,13 @@ const origin = fc.record({
 
 describe('makePlane', () => {
   it('puts its origin at zero', () => {
-    const { xM, yM } = makePlane({ latitudeDeg: 54.4, longitudeDeg: -2.9 }).flat({ latitudeDeg: 54.4, longitudeDeg: -2.9 })
+    const here = { latitudeDeg: 54.4, longitudeDeg: -2.9 }
+    const { xM, yM } = makePlane(here).flat(here)
     expect(Math.hypot(xM, yM)).toBe(0)
   })
 
   it('agrees with the geodesic of GeographicLib to 1 part in 10^6 within 5 km', () => {
-    // Source: Karney (2013), geographiclib-geodesic. The chord and tilt of a tangent plane cost (s / R)^2 / 6, 1e-7 at 5 km.
+    // Source: Karney (2013), geographiclib-geodesic. Chord and tilt of a tangent plane: (s / R)^2 / 6, 1e-7 at 5 km.
     fc.assert(fc.property(origin, near, (at, to) => {
       const plane = makePlane(at)
       const there = plane.globe({ xM: to.x, yM: to.y })

@@ -12,9 +12,10 @@ export default defineApiHandler({
   handler: async ({ db, teamId, params, body }) => {
     const day = await db('track_days').where('id', params.id).first<{ circuit_id: string }>('circuit_id')
     await lockNumbers(db, params.id)
-    const { last } = await db('outings').where('day_id', params.id).max('number as last').first() as { last: number | null }
-    const [row] = await db('outings')
-      .insert({ team_id: teamId, day_id: params.id, circuit_id: day.circuit_id, number: (last ?? 0) + 1, ...outingColumns(body) })
+    const { last } = await db('outings').where('day_id', params.id)
+      .max('number as last').first() as { last: number | null }
+    const place = { team_id: teamId, day_id: params.id, circuit_id: day.circuit_id, number: (last ?? 0) + 1 }
+    const [row] = await db('outings').insert({ ...place, ...outingColumns(body) })
       .returning<{ id: string, number: number }[]>(['id', 'number'])
     return row!
   },

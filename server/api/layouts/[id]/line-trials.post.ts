@@ -23,7 +23,7 @@ export default defineApiHandler({
     return {
       timedLaps: times.length,
       bestS: times.length ? Math.min(...times) : null,
-      lines: cut.lines.map(line => ({ ordinal: Number(line.id), crossed: line.crossed, ignored: line.ignored, offSquareDeg: line.offSquareDeg })),
+      lines: cut.lines.map(({ id, ...count }) => ({ ordinal: Number(id), ...count })),
       warnings: cut.warnings.map(({ code, message }) => ({ code, message })),
     }
   },

@@ -6,7 +6,7 @@ import { readProgress } from '../../../utils/logs'
 import { followLog } from '../../../utils/progress'
 import { onShutdown } from '../../../utils/shutdown'
 
-/** How often the state is told without being asked: keeps proxies from closing, and mends a notification that was missed. */
+/** The state is told this often without being asked: proxies stay open, and a missed notification is mended. */
 const BEAT_MS = 5000
 
 /** Progress of one log as server-sent events: how it stands now, then every step. */

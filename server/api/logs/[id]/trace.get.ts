@@ -10,13 +10,22 @@ export default defineApiHandler({
   who: { action: 'read', of: 'log' },
   params: idParams,
   handler: async ({ db, teamId, params }) => {
-    const log = await db('logs').where('id', params.id).first<{ status: string, gaps: { fromS: number, toS: number }[] }>('status', 'gaps')
+    const log = await db('logs').where('id', params.id)
+      .first<{ status: string, gaps: { fromS: number, toS: number }[] }>('status', 'gaps')
     if (log.status !== 'ready' && log.status !== 'no_lines') {
       throw new ProblemError(409, 'Not read yet', 'The log has no trace before it has been read.')
     }
     const path = await readPath(db, teamId, params.id, log.gaps)
     const step = Math.max(1, Math.ceil(path.timeS.length / MOST_POINTS))
-    const thin = (values: Float64Array, digits: number) => Array.from(values).filter((_, i) => i % step === 0).map(value => Number(value.toFixed(digits)))
-    return { timeS: thin(path.timeS, 3), latitudeDeg: thin(path.latitudeDeg, 7), longitudeDeg: thin(path.longitudeDeg, 7), gaps: path.gaps }
+    const thin = (values: Float64Array, digits: number) => {
+      const count = Math.ceil(values.length / step)
+      return Array.from({ length: count }, (_, i) => Number(values[i * step]!.toFixed(digits)))
+    }
+    return {
+      timeS: thin(path.timeS, 3),
+      latitudeDeg: thin(path.latitudeDeg, 7),
+      longitudeDeg: thin(path.longitudeDeg, 7),
+      gaps: path.gaps,
+    }
   },
 })

@@ -2,7 +2,7 @@ import { randomUUID } from 'node:crypto'
 import { setResponseStatus } from 'h3'
 import { idParams } from '../../../../shared/schemas/common'
 import type { ColumnMap, LogPreview } from '../../../../shared/schemas/logs'
-import { defineStreamHandler } from '../../../utils/api'
+import { defineStreamHandler, type ShortTransaction } from '../../../utils/api'
 import type { Transaction } from '../../../utils/db/transactions'
 import { sendJob } from '../../../utils/jobs'
 import { headerKey, sniffLog } from '../../../utils/laps/sniff'
@@ -19,7 +19,13 @@ export default defineStreamHandler({
   stream: async ({ event, params, person, teamId, transaction }) => {
     const log = { id: randomUUID(), teamId, outingId: params.id }
     const storageKey = `${teamId}/${log.id}`
-    await transaction(db => db('logs').insert({ id: log.id, team_id: teamId, file_name: 'being uploaded', storage_key: storageKey, uploaded_by: person.id }))
+    await transaction(db => db('logs').insert({
+      id: log.id,
+      team_id: teamId,
+      file_name: 'being uploaded',
+      storage_key: storageKey,
+      uploaded_by: person.id,
+    }))
     try {
       const upload = await receiveLog(event, storageKey)
       const head = await readLogHead(storageKey, HEAD_BYTES)
@@ -41,7 +47,7 @@ export default defineStreamHandler({
   },
 })
 
-async function refuseTwin(transaction: <T>(run: (db: Transaction) => Promise<T>) => Promise<T>, teamId: string, sha256: string): Promise<void> {
+async function refuseTwin(transaction: ShortTransaction, teamId: string, sha256: string): Promise<void> {
   const twin = await transaction(async db => db('logs').where({ team_id: teamId, sha256 })
     .whereNotIn('status', ['uploading', 'refused', 'cancelled']).first<{ id: string, file_name: string } | undefined>('id', 'file_name'))
   if (twin) {
@@ -50,9 +56,15 @@ async function refuseTwin(transaction: <T>(run: (db: Transaction) => Promise<T>)
 }
 
 /** The log becomes known: with the remembered map of its header it goes straight to the worker. */
-async function keep(db: Transaction, log: { id: string, teamId: string, outingId: string }, upload: Upload, preview: LogPreview): Promise<'queued' | 'mapping'> {
+async function keep(
+  db: Transaction,
+  log: { id: string, teamId: string, outingId: string },
+  upload: Upload,
+  preview: LogPreview,
+): Promise<'queued' | 'mapping'> {
   const key = headerKey(preview)
-  const remembered = key === null ? undefined : await db('column_maps').where({ team_id: log.teamId, header_key: key }).first<{ column_map: ColumnMap } | undefined>('column_map')
+  const remembered = await db('column_maps').where({ team_id: log.teamId, header_key: key })
+    .first<{ column_map: ColumnMap } | undefined>('column_map')
   const status = remembered ? 'queued' : 'mapping'
   await db('logs').where('id', log.id).update({
     file_name: upload.fileName,
