@@ -22,6 +22,7 @@ export interface Upload {
 interface Parcel { file: File, url: string, packed: Blob | null, name: string, stop: AbortController }
 
 const LEAVE = 'A file is still on its way. Leave this sheet and stop it?'
+const LONGEST_SILENCE_MS = 60_000
 const ACTIVE: readonly UploadState[] = ['waiting', 'packing', 'sending']
 
 /**
@@ -142,15 +143,39 @@ function send(parcel: Parcel, onSent: (share: number) => void): Promise<{ status
     const request = new XMLHttpRequest()
     const form = new FormData()
     form.append('file', parcel.packed!, parcel.name)
-    request.upload.onprogress = event => onSent(event.total > 0 ? event.loaded / event.total : 0)
+    const line = watchLine(() => request.abort())
+    request.upload.onprogress = (event) => {
+      line.alive()
+      onSent(event.total > 0 ? event.loaded / event.total : 0)
+    }
     request.onload = () => resolve({ status: request.status, body: parse(request.responseText) })
     request.onerror = () => reject(new CutError())
     request.onabort = () => reject(new CutError())
+    request.onloadend = () => line.leave()
     parcel.stop.signal.addEventListener('abort', () => request.abort(), { once: true })
     request.open('POST', parcel.url)
     request.setRequestHeader('accept', 'application/json')
     request.send(form)
   })
+}
+
+/**
+ * Gives a request up when the device loses its network, or when nothing has moved for a minute: left alone, the browser
+ * would wait for many of them before it calls such a line dead.
+ */
+function watchLine(giveUp: () => void) {
+  let timer = setTimeout(giveUp, LONGEST_SILENCE_MS)
+  window.addEventListener('offline', giveUp)
+  return {
+    alive() {
+      clearTimeout(timer)
+      timer = setTimeout(giveUp, LONGEST_SILENCE_MS)
+    },
+    leave() {
+      clearTimeout(timer)
+      window.removeEventListener('offline', giveUp)
+    },
+  }
 }
 
 function parse(text: string): unknown {

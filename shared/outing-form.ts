@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { localToInstant } from './local-time'
 import { conditionsSchema, outingBody, type Day, type Outing, type OutingBody, type OutingSummary } from './schemas/days'
+import type { Car } from './schemas/setups'
 import { formatTime } from './utils/format'
 
 /** Pressures are shown in bar, so what is wrong with one is said in bar. */
@@ -41,15 +42,19 @@ export function outingToForm(outing: Outing): OutingForm {
 }
 
 /**
- * The form of a new outing, filled with what most likely has not changed since the day's last one. What is measured
- * anew each time (start, fuel, hot pressures) and notes are left open.
+ * The form of a new outing, filled with what most likely has not changed since the day's last one, and with what there
+ * is only one of. What is measured anew each time (start, fuel, hot pressures) and notes are left open.
  */
-export function newOutingForm(day: Pick<Day, 'circuit' | 'outings'>, driverId: string): OutingForm {
+export function newOutingForm(
+  day: Pick<Day, 'circuit' | 'outings'>,
+  driverId: string,
+  cars: readonly Pick<Car, 'id'>[],
+): OutingForm {
   const last: OutingSummary | undefined = day.outings.at(-1)
   const layouts = day.circuit.layouts
   return {
     layoutId: last?.layout.id ?? (layouts.length === 1 ? layouts[0]!.id : ''),
-    carId: last?.car.id ?? '',
+    carId: last?.car.id ?? (cars.length === 1 ? cars[0]!.id : ''),
     setupId: last?.setup.id ?? '',
     driverId: last?.driver.id ?? driverId,
     startedAt: '',

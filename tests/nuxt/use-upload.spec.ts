@@ -22,6 +22,7 @@ class FakeRequest {
   onload = () => {}
   onerror = () => {}
   onabort = () => {}
+  onloadend = () => {}
   status = 0
   responseText = ''
   url = ''
@@ -40,12 +41,14 @@ class FakeRequest {
 
   abort() {
     this.onabort()
+    this.onloadend()
   }
 
   answer(status: number, body: unknown) {
     this.status = status
     this.responseText = JSON.stringify(body)
     this.onload()
+    this.onloadend()
   }
 }
 
@@ -75,6 +78,7 @@ describe('useUpload', () => {
     vi.stubGlobal('XMLHttpRequest', FakeRequest)
   })
   afterEach(() => {
+    vi.useRealTimers()
     for (const wrapper of open.splice(0)) wrapper.unmount()
     vi.unstubAllGlobals()
     vi.restoreAllMocks()
@@ -137,6 +141,24 @@ describe('useUpload', () => {
     retry(uploads.value[0]!.key);
     (await request(1)).answer(201, { id: LOG_ID, status: 'queued' })
     await vi.waitFor(() => expect(uploads.value[0]).toMatchObject({ state: 'sent', problem: null }))
+  })
+
+  it('does not wait for a line that is gone', async () => {
+    const { uploads, add, retry } = await page()
+    add([file('a.csv')], '/x')
+    await request(0)
+    window.dispatchEvent(new Event('offline'))
+    await vi.waitFor(() => expect(uploads.value[0]?.state).toBe('cut'))
+    vi.useFakeTimers({ toFake: ['setTimeout', 'clearTimeout'] })
+    retry(uploads.value[0]!.key)
+    await vi.waitUntil(() => FakeRequest.sent.length === 2)
+    await vi.advanceTimersByTimeAsync(59_000)
+    FakeRequest.sent[1]?.upload.onprogress?.({ loaded: 1, total: 2 })
+    await vi.advanceTimersByTimeAsync(59_000)
+    expect(uploads.value[0]?.state).toBe('sending')
+    await vi.advanceTimersByTimeAsync(2000)
+    vi.useRealTimers()
+    await vi.waitFor(() => expect(uploads.value[0]?.state).toBe('cut'))
   })
 
   it('stops a file that is cancelled and goes on with the next', async () => {

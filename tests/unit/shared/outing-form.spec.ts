@@ -51,14 +51,16 @@ describe('a new outing', () => {
 
   it('takes over what most likely has not changed, and leaves open what is measured anew', () => {
     const { day: _day, teamId: _team, ...summary } = OUTING
-    const form = newOutingForm({ circuit, outings: [{ ...summary, setupChanges: [] }] }, ID(9))
+    const form = newOutingForm({ circuit, outings: [{ ...summary, setupChanges: [] }] }, ID(9), [{ id: ID(7) }])
     expect(form).toMatchObject({ layoutId: ID(1), carId: ID(2), setupId: ID(3), driverId: ID(4) })
     expect(form).toMatchObject({ passenger: true, conditions: { trackC: 34 } })
     expect(form).toMatchObject({ startedAt: '', fuelStartL: null, notes: '', hotPressures: { fl: null, fr: null, rl: null, rr: null } })
   })
 
   it('begins a day with the only layout there is and the person who asks', () => {
-    expect(newOutingForm({ circuit, outings: [] }, ID(9))).toMatchObject({ layoutId: ID(1), carId: '', driverId: ID(9) })
-    expect(newOutingForm({ circuit: { ...circuit, layouts: [] }, outings: [] }, ID(9)).layoutId).toBe('')
+    const first = newOutingForm({ circuit, outings: [] }, ID(9), [{ id: ID(7) }])
+    expect(first).toMatchObject({ layoutId: ID(1), carId: ID(7), driverId: ID(9) })
+    const open = newOutingForm({ circuit: { ...circuit, layouts: [] }, outings: [] }, ID(9), [{ id: ID(7) }, { id: ID(8) }])
+    expect(open).toMatchObject({ layoutId: '', carId: '' })
   })
 })
