@@ -92,8 +92,10 @@ function runnerUp(group: DayGroup, best: DayLap): Sentence {
   const others = group.figures.counted.filter(lap => lap.outing.id !== best.outing.id)
   const [next] = others.sort((a, b) => a.timeS - b.timeS)
   if (!next) return []
+  const behindS = shownDifferenceS(next.timeS, best.timeS)
   const setup = next.outing.setup.id === best.outing.setup.id ? '' : `, on revision ${next.outing.setup.number} instead of ${best.outing.setup.number}`
-  return [`; outing ${next.outing.number} came within `, { fig: `${formatNumber(next.timeS - best.timeS, 3)} s` }, ` of it${setup}`]
+  if (behindS === 0) return [`; outing ${next.outing.number} did the same${setup}`]
+  return [`; outing ${next.outing.number} came within `, { fig: `${formatNumber(behindS, 3)} s` }, ` of it${setup}`]
 }
 
 /** What an outing's page opens with. */

@@ -55,6 +55,12 @@ export function rowWords(problem: { row?: number | undefined, count?: number | u
   return count > 1 ? `row ${problem.row} and ${count - 1} more` : `row ${problem.row}`
 }
 
+/** A problem in one line; its row is added unless the words name it already. */
+export function problemWords(problem: { message: string, row?: number | undefined }): string {
+  const { message, row } = problem
+  return row === undefined || new RegExp(`\\b${row}\\b`).test(message) ? message : `${message} (row ${row})`
+}
+
 /** Logs that need a person before they can give laps. */
 export function waitingLogs<T extends Pick<LogSummary, 'status'>>(logs: readonly T[]): T[] {
   return logs.filter(log => log.status === 'mapping' || log.status === 'no_lines')

@@ -59,6 +59,11 @@ describe('daySentence', () => {
     ])).toBe('Three outings, 4 laps count. Best 1:30.869, lap 2 of outing 1; outing 3 came within 0.113 s of it, on revision 12 instead of 11.')
   })
 
+  it('takes the difference from the shown times, and says when there is none', () => {
+    expect(says([outing(1, [90.0004]), outing(2, [90.0006])])).toContain('outing 2 came within 0.001 s of it.')
+    expect(says([outing(1, [90]), outing(2, [90.0001])])).toContain('outing 2 did the same.')
+  })
+
   it('names car and layout when there are several', () => {
     expect(says([outing(1, [91]), outing(2, [99], { car: { id: 'coupe', name: '1994 coupe' } })]))
       .toBe('Two outings, 2 laps count. Best 1:31.000 in the 2006 hatchback on Full, lap 1 of outing 1.')

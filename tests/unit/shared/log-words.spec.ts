@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { isUnderWay, progressWords, rowWords, STATUS_WORDS, stepStates, waitingLogs } from '../../../shared/log-words'
+import { isUnderWay, problemWords, progressWords, rowWords, STATUS_WORDS, stepStates, waitingLogs } from '../../../shared/log-words'
 import { LOG_STATUSES, LOG_STEPS } from '../../../shared/schemas/logs'
 
 describe('words about a log', () => {
@@ -30,5 +30,9 @@ describe('words about a log', () => {
     expect(rowWords({ row: 52881 })).toBe('row 52881')
     expect(rowWords({ row: 70902, count: 339 })).toBe('row 70902 and 338 more')
     expect(rowWords({})).toBe('')
+    expect(problemWords({ message: 'No time here.', row: 10 })).toBe('No time here. (row 10)')
+    expect(problemWords({ message: 'Backwards from line 10.', row: 10 })).toBe('Backwards from line 10.')
+    expect(problemWords({ message: 'After 100 rows.', row: 10 })).toBe('After 100 rows. (row 10)')
+    expect(problemWords({ message: 'Cut off.' })).toBe('Cut off.')
   })
 })

@@ -60,7 +60,8 @@ describe('a new outing', () => {
   it('begins a day with the only layout there is and the person who asks', () => {
     const first = newOutingForm({ circuit, outings: [] }, ID(9), [{ id: ID(7) }])
     expect(first).toMatchObject({ layoutId: ID(1), carId: ID(7), driverId: ID(9) })
-    const open = newOutingForm({ circuit: { ...circuit, layouts: [] }, outings: [] }, ID(9), [{ id: ID(7) }, { id: ID(8) }])
+    const bare = { circuit: { ...circuit, layouts: [] }, outings: [] }
+    const open = newOutingForm(bare, ID(9), [{ id: ID(7) }, { id: ID(8) }])
     expect(open).toMatchObject({ layoutId: '', carId: '' })
   })
 })
