@@ -15,6 +15,9 @@ interface Wishes {
   change: (key: string, ends: Pick<DraftLine, 'a' | 'b'>) => void
 }
 
+/** Room that the name of a line takes beside it. */
+const NAME_PX = 125
+
 const place = (point: DraftLine['a']): [number, number] => [point.latitudeDeg, point.longitudeDeg]
 const point = (at: Leaflet.LatLng): DraftLine['a'] => ({ latitudeDeg: at.lat, longitudeDeg: at.lng })
 
@@ -36,8 +39,9 @@ export function drawLines(
       seen.setLatLngs(to)
     }
     const name = `<b>${lineName(line.ordinal)}</b>${line.stationM === null ? '' : `<br>${Math.round(line.stationM)} m`}`
+    const at = within(map, outer(line, centre), side(line, centre))
     L.marker(outer(line, centre), { icon: L.divIcon({ className: '', iconSize: [0, 0] }), interactive: false, keyboard: false, pmIgnore: true })
-      .bindTooltip(name, { permanent: true, direction: side(line, centre), offset: offset(side(line, centre)), className: 'map-word' }).addTo(group)
+      .bindTooltip(name, { permanent: true, direction: at, offset: offset(at), className: 'map-word' }).addTo(group)
     grip.on('click', () => wishes.select(line.key))
     if (isSelected && wishes.mayEdit) {
       const apartPx = map.latLngToLayerPoint(ends[0]!).distanceTo(map.latLngToLayerPoint(ends[1]!))
@@ -63,6 +67,15 @@ function awayDeg(from: DraftLine['a'], to: DraftLine['a']): number {
 /** The end of a line that lies on the outer side of the circuit: its name stands there, off the trace. */
 function outer(line: DraftLine, centre: DraftLine['a']): [number, number] {
   return place(awayDeg(centre, line.a) > awayDeg(centre, line.b) ? line.a : line.b)
+}
+
+/** A name that would reach over the edge of the map stands above its line, or towards the middle. */
+function within(map: Leaflet.Map, place: [number, number], wanted: ReturnType<typeof side>): ReturnType<typeof side> {
+  const { x } = map.latLngToContainerPoint(place)
+  const fromEdgePx = { left: x, right: map.getSize().x - x, top: Infinity, bottom: Infinity }[wanted]
+  if (fromEdgePx > NAME_PX) return wanted
+  if (fromEdgePx > NAME_PX / 2) return 'top'
+  return wanted === 'left' ? 'right' : 'left'
 }
 
 function side(line: DraftLine, centre: DraftLine['a']): 'top' | 'bottom' | 'left' | 'right' {

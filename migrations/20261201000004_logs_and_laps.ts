@@ -45,6 +45,8 @@ export async function up(knex: Knex): Promise<void> {
       from_s double precision,
       to_s double precision,
       clock_offset_s double precision not null default 0,
+      -- Its lines have changed, and the job that cuts it again has not done so yet.
+      cut_pending boolean not null default false,
       -- What the cut had to say: lines never crossed, and the like.
       warnings jsonb not null default '[]',
       unique (team_id, id),

@@ -5,6 +5,7 @@ import { lapPath } from './laps/place'
 import { makePlane, toPlane } from './laps/project'
 import { matchLaps } from './laps/recut'
 import { readLines } from './circuits'
+import { sendJob } from './jobs'
 import type { Transaction } from './db/transactions'
 
 /** What a new cut changes of a lap that was there before; the rest is a person's. */
@@ -36,6 +37,19 @@ export function readParts(db: Transaction, where: { logId?: string, layoutId?: s
 }
 
 /**
+ * Has every log that was driven on a layout cut again by the worker; until then they count as being processed.
+ * @returns how many logs that is
+ */
+export async function requestCut(db: Transaction, teamId: string, layoutId: string): Promise<number> {
+  const parts = db('outings').where('layout_id', layoutId).select('id')
+  const pending = await db('log_parts').where('team_id', teamId).whereIn('outing_id', parts)
+    .whereIn('log_id', db('logs').whereIn('status', ['no_lines', 'ready']).select('id'))
+    .update({ cut_pending: true }).returning<{ log_id: string }[]>('log_id')
+  if (pending.length) await sendJob(db, 'layout-cut', { teamId, layoutId })
+  return new Set(pending.map(part => part.log_id)).size
+}
+
+/**
  * Cuts a part of a log at the lines of its layout and stores the laps. A lap that was there before keeps its identifier
  * and its exclusion where the new one covers the same stretch of time. The layout is locked, so that lines which change
  * at the same moment are seen either wholly or not at all.
@@ -49,7 +63,7 @@ export async function cutPart(db: Transaction, part: LogPart, path: LogPath): Pr
     ? cutLaps(path, lines, { direction: layout.direction })
     : { laps: [], lines: [], warnings: [] }
   await storeLaps(db, part, path, cut.laps)
-  await db('log_parts').where('id', part.id).update({ warnings: JSON.stringify(cut.warnings) })
+  await db('log_parts').where('id', part.id).update({ cut_pending: false, warnings: JSON.stringify(cut.warnings) })
   if (layout.length_m === null) {
     const lengthM = bestLapLength(path, cut.laps)
     if (lengthM !== null) await db('layouts').where('id', part.layout_id).update({ length_m: lengthM })

@@ -6,10 +6,8 @@ import process from 'node:process'
 import { PassThrough, Transform, Writable, type Readable } from 'node:stream'
 import { pipeline } from 'node:stream/promises'
 import { createGunzip } from 'node:zlib'
+import { LOG_LIMIT_BYTES } from '../../shared/gzip'
 import { ProblemError } from './problems'
-
-/** The largest log, uncompressed: 200 MB. */
-export const LOG_LIMIT_BYTES = 200_000_000
 
 const KEY = /^[0-9a-f-]{36}\/[0-9a-f-]{36}$/
 

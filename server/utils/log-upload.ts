@@ -1,6 +1,7 @@
 import formidable, { errors as formidableErrors } from 'formidable'
 import type { H3Event } from 'h3'
-import { LOG_LIMIT_BYTES, openLogSink, type LogSink, type StoredFile } from './log-files'
+import { LOG_LIMIT_BYTES } from '../../shared/gzip'
+import { openLogSink, type LogSink, type StoredFile } from './log-files'
 import { ProblemError } from './problems'
 
 /** How many bytes of a refused upload are read on, so that a browser comes to reading the answer. */

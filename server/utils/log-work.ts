@@ -110,7 +110,23 @@ async function refuse(teamId: string, logId: string, error: unknown, lastTry: bo
 }
 
 /** Lines have changed: every log driven on the layout is cut again from its stored channels. */
-export async function cutLayoutJob({ teamId, layoutId }: Jobs['layout-cut']): Promise<void> {
+export async function cutLayoutJob({ teamId, layoutId }: Jobs['layout-cut'], lastTry: boolean): Promise<void> {
+  try {
+    await cutLayout(teamId, layoutId)
+  }
+  catch (error) {
+    // Given up: the laps stay as they were, and nobody waits for others any more.
+    if (lastTry) await asTeam(teamId, db => stopWaiting(db, layoutId))
+    throw error
+  }
+}
+
+async function stopWaiting(db: Transaction, layoutId: string): Promise<void> {
+  const ids = (await readParts(db, { layoutId })).map(part => part.id)
+  await db('log_parts').whereIn('id', ids).update({ cut_pending: false })
+}
+
+async function cutLayout(teamId: string, layoutId: string): Promise<void> {
   const parts = await asTeam(teamId, db => readParts(db, { layoutId }))
   for (const { id, log_id: logId } of parts) {
     const status = await asTeam(teamId, async (db) => {

@@ -1,6 +1,6 @@
 import type { Log, LogProgress } from '../../shared/schemas/days'
 import type { ColumnMap, LogPreview, LogProblem, LogStatus } from '../../shared/schemas/logs'
-import type { Transaction } from './db/transactions'
+import type { Raw, Transaction } from './db/transactions'
 import { notFound } from './problems'
 
 interface LogRow {
@@ -22,9 +22,16 @@ interface LogRow {
   uploaded_at: Date
 }
 
+/** The status of a log as people see it: while its laps wait to be cut again, it is being processed. */
+export function shownStatus(db: Transaction, table: string): Raw {
+  return db.raw(`case when ??.status in ('no_lines', 'ready') and exists (select 1 from log_parts w
+    where w.team_id = ??.team_id and w.log_id = ??.id and w.cut_pending) then 'processing' else ??.status end as status`,
+  [table, table, table, table])
+}
+
 /** A log with its columns, channels, problems and the outing it was driven in. */
 export async function readLog(db: Transaction, id: string): Promise<Log> {
-  const row = await db('logs').where('id', id).first<LogRow | undefined>()
+  const row = await db('logs').where('id', id).first<LogRow | undefined>('*', shownStatus(db, 'logs'))
   if (!row) throw notFound('log')
   const channels = await db('channels').where({ team_id: row.team_id, log_id: id }).orderBy('ordinal')
     .select<Log['channels']>('name', 'label', 'unit', 'rate_hz as rateHz')
@@ -62,7 +69,8 @@ export async function readLog(db: Transaction, id: string): Promise<Log> {
 
 /** How far a log is, as the database knows it: what a page is told before the first live step arrives. */
 export async function readProgress(db: Transaction, id: string): Promise<LogProgress> {
-  const row = await db('logs').where('id', id).first<{ status: LogStatus } | undefined>('status')
+  const row = await db('logs').where('id', id)
+    .first<{ status: LogStatus } | undefined>(shownStatus(db, 'logs'))
   if (!row) throw notFound('log')
   const over = !['uploading', 'queued', 'processing'].includes(row.status)
   return { logId: id, status: row.status, step: null, fraction: over ? 1 : 0 }

@@ -4,6 +4,7 @@ import type { Sheet } from '../../shared/schemas/setups'
 import { sheetDifferences } from '../../shared/setup-fields'
 import type { Transaction } from './db/transactions'
 import { readLaps } from './laps-of-outings'
+import { shownStatus } from './logs'
 import { notFound } from './problems'
 
 interface OutingRow {
@@ -51,7 +52,7 @@ function outingRows(db: Transaction) {
 
 async function readLogs(db: Transaction, outingIds: readonly string[]): Promise<LogRow[]> {
   return db('logs as g').join('log_parts as p', 'p.log_id', 'g.id').whereIn('p.outing_id', outingIds)
-    .orderBy('g.uploaded_at').select<LogRow[]>('p.outing_id', 'g.id', 'g.file_name', 'g.size_bytes', 'g.status', 'g.problem')
+    .orderBy('g.uploaded_at').select<LogRow[]>('p.outing_id', 'g.id', 'g.file_name', 'g.size_bytes', 'g.problem', shownStatus(db, 'g'))
 }
 
 /** Outings of a day in order, with laps, logs, and what was changed on the car since its outing before. */

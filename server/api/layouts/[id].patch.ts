@@ -2,7 +2,7 @@ import { layoutBody } from '../../../shared/schemas/circuits'
 import { idParams } from '../../../shared/schemas/common'
 import { defineApiHandler } from '../../utils/api'
 import { readLayout } from '../../utils/circuits'
-import { sendJob } from '../../utils/jobs'
+import { requestCut } from '../../utils/cutting'
 
 export default defineApiHandler({
   who: { action: 'circuits.write', of: 'layout' },
@@ -11,7 +11,7 @@ export default defineApiHandler({
   handler: async ({ db, teamId, params, body }) => {
     const before = await db('layouts').where('id', params.id).first<{ direction: string | null }>('direction')
     await db('layouts').where('id', params.id).update({ name: body.name, direction: body.direction })
-    if (before.direction !== body.direction) await sendJob(db, 'layout-cut', { teamId, layoutId: params.id })
+    if (before.direction !== body.direction) await requestCut(db, teamId, params.id)
     return readLayout(db, params.id)
   },
 })

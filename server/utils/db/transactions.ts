@@ -2,6 +2,7 @@ import type { Knex } from 'knex'
 import { pool } from './pool'
 
 export type Transaction = Knex.Transaction
+export type Raw = Knex.Raw
 
 /**
  * Runs queries as nobody: row-level security shows no row of any team. For sign-in and registration, which go through

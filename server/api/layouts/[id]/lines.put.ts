@@ -2,7 +2,7 @@ import { linesBody } from '../../../../shared/schemas/circuits'
 import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 import { readLayout } from '../../../utils/circuits'
-import { sendJob } from '../../../utils/jobs'
+import { requestCut } from '../../../utils/cutting'
 import { ProblemError } from '../../../utils/problems'
 
 /** All lines of a layout at once; every log driven on it is then cut again from its stored channels. */
@@ -29,9 +29,7 @@ export default defineApiHandler({
         b_longitude_deg: line.b.longitudeDeg,
       })))
     }
-    const { logs } = await db('logs as g').join('log_parts as p', 'p.log_id', 'g.id').join('outings as o', 'o.id', 'p.outing_id')
-      .where('o.layout_id', params.id).whereIn('g.status', ['no_lines', 'ready']).countDistinct('g.id as logs').first() as { logs: number }
-    if (logs) await sendJob(db, 'layout-cut', { teamId, layoutId: params.id })
-    return { ...await readLayout(db, params.id), recutting: logs }
+    const recutting = await requestCut(db, teamId, params.id)
+    return { ...await readLayout(db, params.id), recutting }
   },
 })
