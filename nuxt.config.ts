@@ -7,8 +7,6 @@ export default defineNuxtConfig({
   // An `app/` folder would move the whole source folder, so its place is said here.
   dir: { app: 'app' },
   buildDir,
-  // Only `shared/utils` is auto-imported; server/utils is imported explicitly so that no name clashes.
-  imports: { scan: true },
   components: [{ path: '~/components', pathPrefix: false }],
   css: [
     '@fontsource/zilla-slab/latin-400.css',

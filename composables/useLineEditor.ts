@@ -1,6 +1,6 @@
 import type { Layout, SavedLine } from '#shared/schemas/circuits'
 import type { DraftLine, FlatLine, FlatTrace } from '#shared/lines'
-import { lineAt, lineWidthM, movedLine, stationForNext, widenedLine } from '#shared/lines'
+import { globeLine, lineAt, lineWidthM, movedLine, stationForNext, widenedLine } from '#shared/lines'
 import { useLineMeasures } from './useLineMeasures'
 
 type Ends = Pick<DraftLine, 'a' | 'b'>
@@ -61,7 +61,7 @@ function lineEdits(
   commit: (next: DraftLine[]) => void, selected: Ref<string | null>,
 ) {
   const { plane, flat, start, loop, shown } = measures
-  const globe = (line: FlatLine): Ends => ({ a: plane.value.globe(line.a), b: plane.value.globe(line.b) })
+  const globe = (line: FlatLine): Ends => globeLine(plane.value, line)
   let made = 0
 
   /** The first line of a layout is its start and finish line, every other one ends a sector. */

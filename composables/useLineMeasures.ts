@@ -1,5 +1,6 @@
 import type { DraftLine, FlatLine, FlatTrace } from '#shared/lines'
-import { bestLoop, lineWidthM, offSquareDeg, orderedLines, stationOf } from '#shared/lines'
+import { bestLoop, flatLine, lineWidthM, offSquareDeg, orderedLines, stationOf } from '#shared/lines'
+import type { GlobePoint } from '#shared/plane'
 import { makePlane } from '#shared/plane'
 
 /** A line as the sheet shows it. Station and squareness are null while there is no trace to measure along. */
@@ -10,12 +11,13 @@ export interface ShownLine extends DraftLine {
 }
 
 const NOWHERE = { latitudeDeg: 0, longitudeDeg: 0 }
+const planeAt = (point: GlobePoint) => makePlane(point.latitudeDeg, point.longitudeDeg)
 
 /** Where along the trace the lines of a layout are, how wide and how square, and in which order they are driven. */
 export function useLineMeasures(lines: Ref<DraftLine[]>, trace: Ref<FlatTrace | null>) {
   /** The plane in which lines are moved: the trace's, or one at the first line when there is no trace. */
-  const plane = computed(() => trace.value?.plane ?? makePlane(lines.value[0]?.a ?? NOWHERE))
-  const flat = (line: DraftLine): FlatLine => ({ a: plane.value.flat(line.a), b: plane.value.flat(line.b) })
+  const plane = computed(() => trace.value?.plane ?? planeAt(lines.value[0]?.a ?? NOWHERE))
+  const flat = (line: DraftLine): FlatLine => flatLine(plane.value, line)
   const start = computed(() => lines.value.find(line => line.kind === 'start_finish') ?? null)
   const loop = computed(() => trace.value && bestLoop(trace.value, start.value && flat(start.value)))
 

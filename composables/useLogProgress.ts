@@ -1,4 +1,4 @@
-import { isUnderWay } from '#shared/log-words'
+import { isUnderWay, withNews } from '#shared/log-words'
 import type { LogProgress, LogSummary } from '#shared/schemas/days'
 import { logProgressSchema } from '#shared/schemas/days'
 
@@ -47,7 +47,7 @@ export function useLogProgress(onSettled: (logId: string) => void) {
     function told(news: LogProgress) {
       each.waitMs = FIRST_WAIT_MS
       cut.value = false
-      progress[logId] = news
+      progress[logId] = withNews(progress[logId], news)
       if (!isUnderWay(news.status)) settle(logId)
     }
   }

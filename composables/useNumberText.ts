@@ -7,6 +7,8 @@ interface NumberTextOptions {
   digits: number
   /** What the arrow keys add or take away, in the unit shown. */
   step: number
+  /** Whether a figure above zero is written with its sign. */
+  plus?: boolean
 }
 
 /** Figures are kept to a millionth, so that 2.1 bar is 210 kPa and not 210.00000000000003. */
@@ -44,11 +46,11 @@ export function useNumberText(model: Ref<number | null>, options: MaybeRefOrGett
   return { text, typed, tidy, nudge }
 }
 
-function write(stored: number | null, { scale, digits }: NumberTextOptions): string {
+function write(stored: number | null, { scale, digits, plus }: NumberTextOptions): string {
   if (stored === null || Number.isNaN(stored)) return ''
   const shown = tidyFloat(stored / scale)
   const own = String(Math.abs(shown)).split('.')[1]?.length ?? 0
-  return formatNumber(shown, Math.max(digits, own))
+  return plus ? formatDifference(shown, Math.max(digits, own)) : formatNumber(shown, Math.max(digits, own))
 }
 
 function read(typed: string, { scale }: NumberTextOptions): number | null {

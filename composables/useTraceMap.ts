@@ -2,11 +2,14 @@ import type * as Leaflet from 'leaflet'
 import type { FlatTrace, LogTrace, Loop } from '#shared/lines'
 import { headingAtWay, pointAtWay, roundLengthM } from '#shared/lines'
 import type { Plane } from '#shared/plane'
+import { pointToPlane, toDegrees } from '#shared/plane'
 
 type L = typeof Leaflet
 type LatLng = [number, number]
 
 const ARROWS = 5
+/** Wider maps have no graph paper. */
+const WIDEST_DEG = 5
 
 /** The trace of a log on a map: every passage pale, the best lap strong, the way driven, and where the log starts. */
 export function drawTrace(L: L, map: Leaflet.Map, raw: LogTrace, trace: FlatTrace, loop: Loop): Leaflet.LayerGroup {
@@ -21,7 +24,8 @@ export function drawTrace(L: L, map: Leaflet.Map, raw: LogTrace, trace: FlatTrac
   if (loop.closed) L.polyline(best, { ...thin, color: 'var(--ink)', weight: 1.75 }).addTo(group)
   for (let k = 0; k < ARROWS; k++) {
     const atM = loop.fromM + loop.lengthM * (k + 0.5) / ARROWS
-    const { latitudeDeg, longitudeDeg } = trace.plane.globe(pointAtWay(trace, atM))
+    const { xM, yM } = pointAtWay(trace, atM)
+    const { latitudeDeg, longitudeDeg } = toDegrees(trace.plane, xM, yM)
     const turn = -headingAtWay(trace, atM) * 180 / Math.PI
     const html = `<svg viewBox="-9 -9 18 18" width="18" height="18" aria-hidden="true"><path transform="rotate(${turn.toFixed(1)})" d="M-4 -6L5 0L-4 6" fill="none" stroke="var(--ink)" stroke-width="1.75"/></svg>`
     L.marker([latitudeDeg, longitudeDeg], { icon: L.divIcon({ className: 'way-arrow', html, iconSize: [18, 18] }), interactive: false, keyboard: false, pmIgnore: true }).addTo(group)
@@ -45,7 +49,7 @@ function pieces(raw: LogTrace, place: (i: number) => LatLng): LatLng[][] {
 /**
  * Graph paper under the map: squares of a round length, redrawn as the map moves.
  * @param planeNow the plane in which the squares are square
- * @param told is told the side of the squares, metres
+ * @param told is told the side of the squares, metres; 0 where there are none
  */
 export function drawGraticule(
   L: L, map: Leaflet.Map, planeNow: () => Plane, told: (sideM: number) => void,
@@ -59,12 +63,18 @@ export function drawGraticule(
     group.clearLayers()
     const plane = planeNow()
     const bounds = map.getBounds().pad(0.15)
-    const low = plane.flat({ latitudeDeg: bounds.getSouth(), longitudeDeg: bounds.getWest() })
-    const high = plane.flat({ latitudeDeg: bounds.getNorth(), longitudeDeg: bounds.getEast() })
+    // A map of half the earth, before there is a trace: no plane has squares there.
+    if (bounds.getEast() - bounds.getWest() > WIDEST_DEG) {
+      told(0)
+      return
+    }
+    const low = pointToPlane(plane, { latitudeDeg: bounds.getSouth(), longitudeDeg: bounds.getWest() })
+    const high = pointToPlane(plane, { latitudeDeg: bounds.getNorth(), longitudeDeg: bounds.getEast() })
     const sideM = roundLengthM(Math.max(10, (high.xM - low.xM) / 7))
     const line = (x1: number, y1: number, x2: number, y2: number) => {
-      const ends = [{ xM: x1, yM: y1 }, { xM: x2, yM: y2 }]
-        .map(at => plane.globe(at)).map(at => [at.latitudeDeg, at.longitudeDeg] as LatLng)
+      const ends = [toDegrees(plane, x1, y1), toDegrees(plane, x2, y2)]
+        .map(({ latitudeDeg, longitudeDeg }): LatLng => [latitudeDeg, longitudeDeg])
+      if (ends.flat().some(Number.isNaN)) return
       L.polyline(ends, { renderer, pane: 'graticule', color: 'var(--grid)', weight: 1, interactive: false, pmIgnore: true }).addTo(group)
     }
     for (let x = Math.ceil(low.xM / sideM) * sideM; x <= high.xM; x += sideM) line(x, low.yM, x, high.yM)

@@ -128,7 +128,7 @@ export async function up(knex: Knex): Promise<void> {
     -- The hash is not among the columns that the application may read.
     grant select (id, name, email, session_epoch, created_at), update (name) on users to lapwright_app;
     grant select, update (name) on teams to lapwright_app;
-    grant select, insert, update on memberships to lapwright_app;
+    grant select, insert, update (role, left_at) on memberships to lapwright_app;
   `)
 }
 

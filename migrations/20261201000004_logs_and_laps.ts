@@ -16,7 +16,7 @@ export async function up(knex: Knex): Promise<void> {
       column_map jsonb,
       remembered boolean not null default false,
       status text not null default 'uploading' check (status in
-        ('uploading', 'mapping', 'queued', 'processing', 'no_lines', 'ready', 'refused', 'cancelled')),
+        ('uploading', 'mapping', 'queued', 'processing', 'no_lines', 'ready', 'refused')),
       -- Why it was refused: code, message, row.
       problem jsonb,
       row_count integer,
@@ -33,8 +33,16 @@ export async function up(knex: Knex): Promise<void> {
       check (status = 'uploading' or sha256 is not null),
       foreign key (team_id, uploaded_by) references memberships (team_id, user_id) on delete set null (uploaded_by)
     );
-    -- The same bytes once a team; a file that was refused or given up may come again.
-    create unique index logs_sha256 on logs (team_id, sha256) where status not in ('uploading', 'refused', 'cancelled');
+    -- Uploads that a killed process left half done; their files go with the rows. Across teams, hence of the owner.
+    create function app.sweep_uploads(older interval) returns setof text
+      language sql volatile security definer set search_path = public, pg_temp as $$
+      delete from logs where status = 'uploading' and uploaded_at < now() - older returning storage_key
+    $$;
+    revoke execute on function app.sweep_uploads from public;
+    grant execute on function app.sweep_uploads to lapwright_app;
+
+    -- The same bytes once a team; a file that was refused may come again.
+    create unique index logs_sha256 on logs (team_id, sha256) where status not in ('uploading', 'refused');
 
     create table log_parts (
       id uuid primary key default app.uuid_v7(),
@@ -119,11 +127,14 @@ export async function up(knex: Knex): Promise<void> {
     ) partition by hash (team_id);
   `)
   for (const table of ['channels', 'laps', 'lap_sectors']) await partitionByTeam(knex, table)
-  for (const table of ['logs', 'log_parts', 'column_maps', 'channels', 'laps', 'lap_sectors']) {
+  for (const table of ['logs', 'log_parts', 'column_maps']) {
     await protectTenantTable(knex, table, ['owner', 'driver', 'crew'])
   }
+  await protectTenantTable(knex, 'laps', ['owner', 'driver'])
+  // Written by the jobs of the team alone.
+  for (const table of ['channels', 'lap_sectors']) await protectTenantTable(knex, table, [])
 }
 
 export async function down(knex: Knex): Promise<void> {
-  await knex.raw('drop table lap_sectors, laps, channels, column_maps, log_parts, logs')
+  await knex.raw('drop function app.sweep_uploads; drop table lap_sectors, laps, channels, column_maps, log_parts, logs')
 }

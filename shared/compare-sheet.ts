@@ -1,6 +1,7 @@
 import type { Finding } from './compare-words'
-import { findingOf, lapKeys, shownDifferenceS } from './compare-words'
+import { findingOf, lapKeys } from './compare-words'
 import { extentOf, widestApart } from './compare-series'
+import { shownDifferenceS } from './laps'
 import type { ComparedLap, Comparison } from './schemas/compare'
 import { formatDifference, formatG, formatKmh } from './utils/format'
 

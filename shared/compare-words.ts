@@ -1,6 +1,7 @@
 import { steepestStretch } from './compare-series'
+import { shownDifferenceS } from './laps'
 import type { ComparedLap, Comparison } from './schemas/compare'
-import { formatDate, formatDifference, formatLapTime, formatNumber } from './utils/format'
+import { asSentence, formatDate, formatDifference, formatLapTime, formatNumber, numberInWords } from './utils/format'
 
 /** A part of a sentence: running text, a figure, or the part on which the highlighter lies. */
 export interface Word { text: string, as: 'text' | 'figure' | 'mark' }
@@ -28,22 +29,6 @@ export interface SectorRow {
 const text = (words: string): Word => ({ text: words, as: 'text' })
 const figure = (words: string): Word => ({ text: words, as: 'figure' })
 const mark = (words: string): Word => ({ text: words, as: 'mark' })
-
-const NUMBERS = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve']
-
-/** Small numbers in words: 'no', 'one', ... 'twelve', then figures. */
-export function numberWord(count: number): string {
-  return NUMBERS[count] ?? String(count)
-}
-
-export function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
-}
-
-/** Difference of two times as shown, s: each is rounded to 1 ms first. */
-export function shownDifferenceS(a: number, b: number): number {
-  return (Math.round(a * 1000) - Math.round(b * 1000)) / 1000
-}
 
 const seconds = (valueS: number) => formatNumber(Math.abs(valueS), 3)
 
@@ -92,7 +77,7 @@ function whereBySector(rows: SectorRow[], totalS: number): Word[] | null {
   const share = most.differenceS! / totalS
   const what = totalS > 0 ? 'lost' : 'gained'
   if (share > 1.05) {
-    return [mark(`${capital(most.name)} alone ${totalS > 0 ? 'cost' : 'gained'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places lost some of it again.')]
+    return [mark(`${asSentence(most.name)} alone ${totalS > 0 ? 'cost' : 'gained'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places lost some of it again.')]
   }
   if (share < 0.45) return [text(`The time was ${what} in several sectors, nowhere most of it.`)]
   return [mark(`${shareWords(share)} of it was ${what} in ${most.name}`), text('.')]
@@ -129,7 +114,7 @@ function sectorWords(rows: SectorRow[]): Word[] {
   if (!known.length) return []
   const words: Word[] = []
   for (const [i, row] of known.entries()) {
-    words.push(text(`${i ? ', ' : ''}${i ? row.name : capital(row.name)} `), figure(formatDifference(row.differenceS!)))
+    words.push(text(`${i ? ', ' : ''}${i ? row.name : asSentence(row.name)} `), figure(formatDifference(row.differenceS!)))
   }
   return [...words, text(' s. ')]
 }
@@ -147,7 +132,7 @@ function carWords(comparison: Comparison): Word[] {
   if (lap.outing.id === against.outing.id) return [text('Both were driven in one outing on one setup sheet. Two laps cannot say whether this is a habit or happened once.')]
   const count = setupDifferences.length
   if (!count) return [text('The setup sheets do not differ. Two laps cannot say whether the driver or the day made the difference.')]
-  return [text(`${capital(numberWord(count))} ${count === 1 ? 'setting differs' : 'settings differ'} between the setup sheets. Two laps cannot say whether the car, the driver or the day made the difference.`)]
+  return [text(`${asSentence(numberInWords(count))} ${count === 1 ? 'setting differs' : 'settings differ'} between the setup sheets. Two laps cannot say whether the car, the driver or the day made the difference.`)]
 }
 
 /** The words of a sentence as plain text, for titles and tests. */

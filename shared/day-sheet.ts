@@ -1,6 +1,6 @@
-import { lapFigures, type LapFigures } from './laps'
+import { lapFigures, shownDifferenceS, type LapFigures } from './laps'
 import type { Day, Lap, OutingSummary } from './schemas/days'
-import { formatLapTime, formatNumber } from './utils/format'
+import { asSentence, countInWords, formatLapTime, formatNumber, numberInWords } from './utils/format'
 
 export type Weather = 'dry' | 'wet'
 
@@ -45,34 +45,18 @@ export function dayGroups(outings: readonly OutingSummary[]): DayGroup[] {
 /** A sentence in pieces, so that quantities can be set in their own face. */
 export type Sentence = (string | { fig: string })[]
 
-const NUMBERS = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve']
-
-/** A count as running text has it: in words up to twelve. */
-export function countWords(count: number, one: string, many = `${one}s`): string {
-  const noun = count === 1 ? one : many
-  return `${numberWord(count)} ${noun}`
-}
-
-function numberWord(count: number): string {
-  return NUMBERS[count] ?? String(count)
-}
-
-export function capital(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1)
-}
-
 /** What the day's sheet opens with: its finding, worked out from the laps. */
 export function daySentence(day: Pick<Day, 'outings'>, groups: readonly DayGroup[]): Sentence {
-  const outings = countWords(day.outings.length, 'outing')
+  const outings = countInWords(day.outings.length, 'outing')
   if (day.outings.length === 0) return ['No outing on this sheet yet.']
   const counted = groups.reduce((sum, group) => sum + group.figures.counted.length, 0)
   const [fastest] = groups.filter(group => group.figures.best)
     .sort((a, b) => a.figures.best!.timeS - b.figures.best!.timeS)
-  if (!fastest) return [`${capital(outings)}, and no lap that counts yet${waitingWords(day.outings)}.`]
+  if (!fastest) return [`${asSentence(outings)}, and no lap that counts yet${waitingWords(day.outings)}.`]
   const best = fastest.figures.best!
   const where = groups.length > 1 ? ` in the ${fastest.car.name} on ${fastest.layout.name}` : ''
   return [
-    `${capital(outings)}, `, { fig: String(counted) }, ` ${counted === 1 ? 'lap counts' : 'laps count'}. Best `,
+    `${asSentence(outings)}, `, { fig: String(counted) }, ` ${counted === 1 ? 'lap counts' : 'laps count'}. Best `,
     { fig: formatLapTime(best.timeS) }, `${where}, lap ${best.number} of outing ${best.outing.number}`,
     ...runnerUp(fastest, best), '.',
   ]
@@ -81,9 +65,9 @@ export function daySentence(day: Pick<Day, 'outings'>, groups: readonly DayGroup
 function waitingWords(outings: readonly OutingSummary[]): string {
   const logs = outings.flatMap(outing => outing.logs)
   const of = (status: string) => logs.filter(log => log.status === status).length
-  if (of('mapping') > 0) return `: ${countWords(of('mapping'), 'log waits for its columns', 'logs wait for their columns')}`
-  if (of('no_lines') > 0) return `: ${countWords(of('no_lines'), 'log waits', 'logs wait')} for the timing lines`
-  if (of('queued') + of('processing') > 0) return `: ${countWords(of('queued') + of('processing'), 'log is', 'logs are')} being read`
+  if (of('mapping') > 0) return `: ${countInWords(of('mapping'), 'log waits for its columns', 'logs wait for their columns')}`
+  if (of('no_lines') > 0) return `: ${countInWords(of('no_lines'), 'log waits', 'logs wait')} for the timing lines`
+  if (of('queued') + of('processing') > 0) return `: ${countInWords(of('queued') + of('processing'), 'log is', 'logs are')} being read`
   return ''
 }
 
@@ -106,18 +90,13 @@ export function outingSentence(outing: Pick<OutingSummary, 'number' | 'laps' | '
     const why = outing.logs.length === 0 ? ' has no log yet' : ` has no lap that counts yet${waitingWords([outing as OutingSummary])}`
     return [`Outing ${outing.number}${why}.`]
   }
-  const laps = counted.length === timed ? `all of its ${countWords(timed, 'lap')} count` : `${numberWord(counted.length)} of its ${countWords(timed, 'timed lap')} ${counted.length === 1 ? 'counts' : 'count'}`
+  const laps = counted.length === timed ? `all of its ${countInWords(timed, 'lap')} count` : `${numberInWords(counted.length)} of its ${countInWords(timed, 'timed lap')} ${counted.length === 1 ? 'counts' : 'count'}`
   const left = sumOfBestS === null ? 0 : shownDifferenceS(best.timeS, sumOfBestS)
   return [
     `Outing ${outing.number} did `, { fig: formatLapTime(best.timeS) }, ` on lap ${best.number}; `,
     timed === 1 ? 'it is the only timed lap' : laps,
     ...(left > 0 ? ['. Its best sectors together are ', { fig: `${formatNumber(left, 3)} s` }, ' faster'] : []), '.',
   ]
-}
-
-/** Difference of two times as a reader of the shown figures works it out. */
-function shownDifferenceS(a: number, b: number): number {
-  return (Math.round(a * 1000) - Math.round(b * 1000)) / 1000
 }
 
 /** Warmest and coolest track of a day, where they differ enough to matter to a comparison of laps. */

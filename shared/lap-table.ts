@@ -1,4 +1,4 @@
-import { bestLap, bestSectors, lapStandings, leftOutReason, shownSectors, sumOfBestSectors, type LapStanding } from './laps'
+import { bestLap, bestSectors, lapStandings, leftOutReason, shownDifferenceS, shownSectors, sumOfBestSectors, type LapStanding } from './laps'
 import type { Lap } from './schemas/days'
 
 export interface LapRowData {
@@ -43,7 +43,7 @@ export function lapTable(laps: readonly Lap[]): LapTableData {
         standing,
         name: lap.kind === 'timed' ? String(lap.number) : lap.kind,
         isBest: lap === best,
-        behindS: best && lap.kind === 'timed' && lap !== best ? milliseconds(lap.timeS, best.timeS) : null,
+        behindS: best && lap.kind === 'timed' && lap !== best ? shownDifferenceS(lap.timeS, best.timeS) : null,
         sectors: Array.from({ length: sectorCount > 1 ? sectorCount : 0 }, (_, k) => {
           const timeS = shown[k] ?? null
           return { timeS, isBest: standing === 'counted' && timeS !== null && timeS === bestSectorsS[k] }
@@ -52,10 +52,6 @@ export function lapTable(laps: readonly Lap[]): LapTableData {
       }
     }),
   }
-}
-
-function milliseconds(a: number, b: number): number {
-  return (Math.round(a * 1000) - Math.round(b * 1000)) / 1000
 }
 
 function notes(lap: Lap, standing: LapStanding): string[] {

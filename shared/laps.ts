@@ -92,6 +92,11 @@ function milliseconds(timeS: number): number {
   return Math.round(timeS * 1000)
 }
 
+/** Difference of two times as a reader of the shown figures works it out, s: each is rounded to 1 ms first. */
+export function shownDifferenceS(a: number, b: number): number {
+  return (milliseconds(a) - milliseconds(b)) / 1000
+}
+
 /**
  * Best time of each sector over some laps, as shown. Null for a sector that no lap has.
  * @param laps laps cut by the same lines; give counted laps only

@@ -1,11 +1,9 @@
 import type { Word } from './compare-words'
-import { capital, numberWord } from './compare-words'
 import type { DraftLine } from './lines'
 import type { LineTrial } from './schemas/circuits'
-import { formatLapTime } from './utils/format'
+import { asSentence, countInWords, formatLapTime } from './utils/format'
 
 const text = (words: string): Word => ({ text: words, as: 'text' })
-const plural = (count: number, one: string) => `${numberWord(count)} ${one}${count === 1 ? '' : 's'}`
 
 /**
  * The sentence that opens the sheet of lines: what they do to the log, or what is to be done first.
@@ -15,11 +13,11 @@ const plural = (count: number, one: string) => `${numberWord(count)} ${one}${cou
 export function trialSentence(lines: readonly Pick<DraftLine, 'kind'>[], trial: LineTrial | null, now: { mayEdit: boolean, stored: boolean }): Word[] {
   if (!lines.length) return [text(now.mayEdit ? 'No lines yet: draw the start and finish line across the track.' : 'No lines have been drawn on this layout yet.')]
   if (!lines.some(line => line.kind === 'start_finish')) return [text('Sector lines alone cut no laps: a start and finish line is missing.')]
-  const subject = capital(plural(lines.length, 'line'))
+  const subject = asSentence(countInWords(lines.length, 'line'))
   if (!trial) return [text(`${subject} on this layout.`)]
   const verb = now.stored ? (lines.length === 1 ? 'cuts' : 'cut') : 'would cut'
   if (!trial.timedLaps) return [text(`${subject} ${verb} no timed lap out of this log: the start and finish line must be crossed at least twice.`)]
-  const laps = `${subject} ${verb} ${plural(trial.timedLaps, 'timed lap')} out of this log`
+  const laps = `${subject} ${verb} ${countInWords(trial.timedLaps, 'timed lap')} out of this log`
   if (trial.bestS === null) return [text(`${laps}.`)]
   return [text(`${laps}, the best in `), { text: formatLapTime(trial.bestS), as: 'figure' }, text('.')]
 }

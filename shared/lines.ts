@@ -1,5 +1,5 @@
 import type { GlobePoint, Plane, PlanePoint } from './plane'
-import { makePlane } from './plane'
+import { makePlane, pointToPlane, toDegrees, toPlane } from './plane'
 
 /** A timing line in the plane. */
 export interface FlatLine { a: PlanePoint, b: PlanePoint }
@@ -66,17 +66,21 @@ const SHORTEST_LOOP_M = 300
 export function flattenTrace(trace: LogTrace): FlatTrace | null {
   const n = trace.timeS.length
   if (n < 2) return null
-  const plane = makePlane({ latitudeDeg: trace.latitudeDeg[0]!, longitudeDeg: trace.longitudeDeg[0]! })
-  const xM = new Float64Array(n)
-  const yM = new Float64Array(n)
+  const plane = makePlane(trace.latitudeDeg[0]!, trace.longitudeDeg[0]!)
+  const { xM, yM } = toPlane(plane, trace.latitudeDeg, trace.longitudeDeg)
   const wayM = new Float64Array(n)
-  for (let i = 0; i < n; i++) {
-    const point = plane.flat({ latitudeDeg: trace.latitudeDeg[i]!, longitudeDeg: trace.longitudeDeg[i]! })
-    xM[i] = point.xM
-    yM[i] = point.yM
-    if (i > 0) wayM[i] = wayM[i - 1]! + Math.hypot(xM[i]! - xM[i - 1]!, yM[i]! - yM[i - 1]!)
-  }
+  for (let i = 1; i < n; i++) wayM[i] = wayM[i - 1]! + Math.hypot(xM[i]! - xM[i - 1]!, yM[i]! - yM[i - 1]!)
   return { plane, timeS: Float64Array.from(trace.timeS), xM, yM, wayM }
+}
+
+/** A line on the globe as it lies in the plane. */
+export function flatLine(plane: Plane, line: { a: GlobePoint, b: GlobePoint }): FlatLine {
+  return { a: pointToPlane(plane, line.a), b: pointToPlane(plane, line.b) }
+}
+
+/** A line in the plane as it lies on the globe: inverse of `flatLine`. */
+export function globeLine(plane: Plane, { a, b }: FlatLine): { a: GlobePoint, b: GlobePoint } {
+  return { a: toDegrees(plane, a.xM, a.yM), b: toDegrees(plane, b.xM, b.yM) }
 }
 
 /** Length of a line, metres. */

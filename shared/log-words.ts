@@ -1,4 +1,4 @@
-import type { LogProgress, LogSummary } from './schemas/days'
+import type { LogProgress } from './schemas/days'
 import { LOG_STEPS, type LogStatus, type LogStep } from './schemas/logs'
 
 /** What a log is doing, for lists. */
@@ -10,17 +10,14 @@ export const STATUS_WORDS: Record<LogStatus, string> = {
   no_lines: 'read; no timing line yet',
   ready: 'read',
   refused: 'refused',
-  cancelled: 'cancelled',
 }
 
 /** The steps of reading a log, as a person sees them. */
 export const STEP_WORDS: Record<LogStep, string> = {
   read: 'Reading the rows',
-  clean: 'Checking times and positions',
-  project: 'Laying out the path in metres',
-  cross: 'Finding where it passes the timing lines',
-  lap: 'Cutting it into laps',
-  store: 'Writing laps and channels',
+  clean: 'Checking times, positions and gaps',
+  cut: 'Cutting it into laps',
+  store: 'Storing laps and channels',
 }
 
 export type StepState = 'done' | 'now' | 'waiting'
@@ -41,6 +38,12 @@ export function stepStates(progress: Pick<LogProgress, 'status' | 'step'>): { st
   }))
 }
 
+/** What is known of a log after some news: news that do not name the step leave the one that was told before. */
+export function withNews(before: LogProgress | undefined, news: LogProgress): LogProgress {
+  if (before?.status !== 'processing' || news.status !== 'processing' || news.step !== null) return news
+  return { ...news, step: before.step, fraction: Math.max(before.fraction, news.fraction) }
+}
+
 /** One line about a log on its way: the step in words and how far the whole is. */
 export function progressWords(progress: Pick<LogProgress, 'status' | 'step' | 'fraction'>): string {
   if (progress.status !== 'processing') return STATUS_WORDS[progress.status]
@@ -59,9 +62,4 @@ export function rowWords(problem: { row?: number | undefined, count?: number | u
 export function problemWords(problem: { message: string, row?: number | undefined }): string {
   const { message, row } = problem
   return row === undefined || new RegExp(`\\b${row}\\b`).test(message) ? message : `${message} (row ${row})`
-}
-
-/** Logs that need a person before they can give laps. */
-export function waitingLogs<T extends Pick<LogSummary, 'status'>>(logs: readonly T[]): T[] {
-  return logs.filter(log => log.status === 'mapping' || log.status === 'no_lines')
 }

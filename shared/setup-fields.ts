@@ -1,4 +1,5 @@
 import { CORNERS, type CornerKey, type Sheet, type SheetCorner } from './schemas/setups'
+import { asSentence } from './utils/format'
 
 /** Where on the car a setting sits. */
 export type SetupGroup = CornerKey | 'front' | 'rear' | 'car'
@@ -18,6 +19,8 @@ export interface SetupField {
   scale: number
   /** Whether the figure may be below zero. */
   signed: boolean
+  /** Whether a figure above zero is written with its sign. */
+  plus: boolean
   kind: 'number' | 'text'
 }
 
@@ -28,7 +31,7 @@ export const CORNER_NAMES: Record<CornerKey, string> = {
   rr: 'rear right',
 }
 
-type CornerField = Pick<SetupField, 'label' | 'unit'> & Partial<Pick<SetupField, 'scale' | 'signed'>>
+type CornerField = Pick<SetupField, 'label' | 'unit'> & Partial<Pick<SetupField, 'scale' | 'signed' | 'plus'>>
   & { key: keyof SheetCorner, long: string }
 
 /** The settings of a corner, in the order in which a sheet is filled in. */
@@ -37,7 +40,7 @@ export const CORNER_FIELDS: readonly CornerField[] = [
   { key: 'targetHotKpa', label: 'Hot, target', long: 'target hot pressure', unit: 'bar', scale: 100 },
   { key: 'camberDeg', label: 'Camber', long: 'camber', unit: '°', signed: true },
   { key: 'casterDeg', label: 'Caster', long: 'caster', unit: '°', signed: true },
-  { key: 'toeMm', label: 'Toe', long: 'toe', unit: 'mm', signed: true },
+  { key: 'toeMm', label: 'Toe', long: 'toe', unit: 'mm', signed: true, plus: true },
   { key: 'springNpmm', label: 'Spring', long: 'spring', unit: 'N/mm' },
   { key: 'bumpClicks', label: 'Bump', long: 'bump', unit: 'clicks' },
   { key: 'reboundClicks', label: 'Rebound', long: 'rebound', unit: 'clicks' },
@@ -49,23 +52,20 @@ function corner(group: CornerKey): SetupField[] {
   return CORNER_FIELDS.map(field => ({
     path: `corners.${group}.${field.key}`,
     label: field.label,
-    fullLabel: sentence(`${place} ${field.long}`),
+    fullLabel: asSentence(`${place} ${field.long}`),
     unit: field.unit,
     group,
     scale: field.scale ?? 1,
     signed: field.signed ?? false,
+    plus: field.plus ?? false,
     kind: 'number',
   }))
-}
-
-function sentence(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1)
 }
 
 type Rest = Partial<Pick<SetupField, 'kind' | 'signed'>>
 
 function single(path: string, label: string, unit: string, group: SetupGroup, rest: Rest = {}): SetupField {
-  return { path, label, fullLabel: label, unit, group, scale: 1, signed: false, kind: 'number', ...rest }
+  return { path, label, fullLabel: label, unit, group, scale: 1, signed: false, plus: false, kind: 'number', ...rest }
 }
 
 /** Every setting of a sheet but its notes: corners from front left to rear right, axles, whole car. */

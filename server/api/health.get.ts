@@ -4,8 +4,8 @@ import { roles } from '../utils/roles'
 /** Whether the process is up and reaches its database. */
 export default defineApiHandler({
   who: 'anyone',
-  handler: async ({ db }) => {
-    await db.raw('select 1')
+  handler: async ({ nobody }) => {
+    await nobody(db => db.raw('select 1'))
     return { ok: true, roles: roles() }
   },
 })

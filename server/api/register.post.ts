@@ -1,5 +1,6 @@
 import { registerBody } from '../../shared/schemas/people'
 import { defineApiHandler } from '../utils/api'
+import { asPerson } from '../utils/db/transactions'
 import { readMe } from '../utils/people'
 import { startSession } from '../utils/sessions'
 
@@ -8,13 +9,12 @@ export default defineApiHandler({
   who: 'anyone',
   body: registerBody,
   status: 201,
-  handler: async ({ event, db, body }) => {
-    const hash = await hashPassword(body.password)
-    const { rows } = await db.raw<{ rows: { id: string }[] }>('select app.register(?, ?, ?, ?) as id', [body.name, body.email, hash, body.teamName])
+  handler: async ({ event, nobody, body }) => {
+    const values = [body.name, body.email, await hashPassword(body.password), body.teamName]
+    const { rows } = await nobody(db =>
+      db.raw<{ rows: { id: string }[] }>('select app.register(?, ?, ?, ?) as id', values))
     const userId = rows[0]!.id
-    await db.raw('select set_config(\'lapwright.user_id\', ?, true)', [userId])
-    const me = await readMe(db, userId)
     await startSession(event, userId, 1)
-    return me
+    return asPerson(userId, db => readMe(db, userId))
   },
 })

@@ -1,6 +1,8 @@
 import process from 'node:process'
 import { workOn } from '../utils/jobs'
-import { cutLayoutJob, readLogJob } from '../utils/log-work'
+import { cutLayoutJob, giveUpCut } from '../utils/cut-work'
+import { giveUpLog, readLogJob } from '../utils/log-work'
+import { sweepUploads } from '../utils/sweep'
 import { roles } from '../utils/roles'
 import { runShutdown } from '../utils/shutdown'
 
@@ -16,7 +18,14 @@ export default defineNitroPlugin(() => {
   process.once('SIGTERM', runShutdown)
   process.once('SIGINT', runShutdown)
   if (import.meta.prerender || !roles().includes('worker')) return
-  Promise.all([workOn('log-read', readLogJob), workOn('layout-cut', cutLayoutJob)]).catch((error: Error) => {
+  const jobs = [
+    workOn('log-read', readLogJob),
+    workOn('log-read-failed', giveUpLog),
+    workOn('layout-cut', cutLayoutJob),
+    workOn('layout-cut-failed', giveUpCut),
+    sweepUploads(),
+  ]
+  Promise.all(jobs).catch((error: Error) => {
     console.error(`The worker could not start: ${error.message}`)
     process.exit(1)
   })

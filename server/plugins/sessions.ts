@@ -5,6 +5,9 @@ import { asPerson } from '../utils/db/transactions'
 export default defineNitroPlugin(() => {
   sessionHooks.hook('fetch', async (session) => {
     const userId = session.user?.id
-    if (userId) await asPerson(userId, db => loadPerson(db, userId, session.epoch))
+    if (!userId) return
+    await asPerson(userId, db => loadPerson(db, userId, session.epoch)).catch(() => {
+      throw createError({ statusCode: 401, message: 'The session has ended.' })
+    })
   })
 })

@@ -25,6 +25,8 @@ export type Who = 'anyone' | 'person' | { action: Action, of: 'team' | Subject }
 
 export interface Person {
   id: string
+  /** `users.session_epoch` of the session. */
+  epoch: number
   teams: { id: string, role: Role }[]
 }
 
@@ -41,8 +43,8 @@ export async function loadPerson(db: Transaction, userId: string, epoch: number 
     .leftJoin('memberships as m', join => join.on('m.user_id', 'u.id').andOnNull('m.left_at'))
     .where('u.id', userId)
     .select<{ session_epoch: number, team_id: string | null, role: Role }[]>('u.session_epoch', 'm.team_id', 'm.role')
-  if (rows[0]?.session_epoch !== epoch) throw signInNeeded()
-  return { id: userId, teams: rows.flatMap(row => row.team_id ? [{ id: row.team_id, role: row.role }] : []) }
+  if (!rows[0] || epoch === undefined || rows[0].session_epoch !== epoch) throw signInNeeded()
+  return { id: userId, epoch, teams: rows.flatMap(row => row.team_id ? [{ id: row.team_id, role: row.role }] : []) }
 }
 
 /** The team of the subject and the person's role there; 404 when it is not theirs, 403 when the role is not enough. */

@@ -23,8 +23,14 @@ interface Definition<P, Q, B, W extends Who, A> {
   who: W
   /** Status of a good answer; 200 when not said. */
   status?: number
-  handler: (context: Input<P, Q, B> & { db: Transaction } & Asked<W>) => Promise<A>
+  handler: (context: Input<P, Q, B> & Asked<W> & Database<W>) => Promise<A>
 }
+
+/**
+ * What belongs to nobody (registration, sign-in) opens its own short transactions, since hashing a password between them
+ * takes long; all else runs in one transaction as the person.
+ */
+type Database<W> = W extends 'anyone' ? { nobody: ShortTransaction } : { db: Transaction }
 
 type Asked<W> = W extends 'anyone' ? object : W extends 'person' ? { person: Person } : { person: Person } & Place
 
@@ -48,10 +54,14 @@ export function defineApiHandler<P extends Schema, Q extends Schema, B extends S
 ) {
   return defineEventHandler(event => answer(event, async () => {
     guardOrigin(event)
+    // Who asks comes first: a stranger is not told what is wrong with a body.
+    if (definition.who !== 'anyone' && !(await getUserSession(event)).user) throw signInNeeded()
     const input = readInput(event, definition)
     if (definition.body) input.body = parse('body', definition.body, await readJson(event))
-    const body = await inTransaction(event, definition.who, input, (db, asked) =>
-      definition.handler({ ...input, ...asked, db } as never))
+    const body = definition.who === 'anyone'
+      ? await definition.handler({ ...input, nobody: asNobody } as never)
+      : await inTransaction(event, definition.who, input, (db, asked) =>
+          definition.handler({ ...input, ...asked, db } as never))
     setResponseStatus(event, definition.status ?? (body === undefined ? 204 : 200))
     return body ?? null
   }))
@@ -66,7 +76,11 @@ export function defineStreamHandler<P extends Schema, Q extends Schema, W extend
     const input = readInput(event, definition)
     const asked = await inTransaction(event, definition.who, input, async (_db, found) => found)
     const { person } = asked as { person: Person }
-    const transaction: ShortTransaction = run => asPerson(person.id, run)
+    // A stream can outlive its session, which a new password ends.
+    const transaction: ShortTransaction = run => asPerson(person.id, async (db) => {
+      await loadPerson(db, person.id, person.epoch)
+      return run(db)
+    })
     return definition.stream({ ...input, ...asked, transaction } as never)
   }))
 }
@@ -88,11 +102,10 @@ function parse(where: 'body' | 'query' | 'path', schema: z.ZodType, value: unkno
 
 async function inTransaction<T>(
   event: H3Event,
-  who: Who,
+  who: Exclude<Who, 'anyone'>,
   input: { params: unknown, query: unknown },
   run: (db: Transaction, asked: object) => Promise<T>,
 ): Promise<T> {
-  if (who === 'anyone') return asNobody(db => run(db, {}))
   const session = await getUserSession(event)
   const userId = session.user?.id
   if (!userId) throw signInNeeded()
@@ -114,6 +127,7 @@ function guardOrigin(event: H3Event): void {
 }
 
 async function answer(event: H3Event, run: () => Promise<unknown>): Promise<unknown> {
+  setResponseHeader(event, 'cache-control', 'private, no-store')
   try {
     return await run()
   }

@@ -1,8 +1,9 @@
 import { randomUUID } from 'node:crypto'
-import type { DrivingDirection, CutLap, CutResult } from './laps/types'
+import { LapsError } from './laps/errors'
+import type { DrivingDirection, CutLap, CutResult, TimingLine } from './laps/types'
 import { cutLaps } from './laps/lap'
 import { lapPath } from './laps/place'
-import { makePlane, toPlane } from './laps/project'
+import { makePlane, toPlane } from '../../shared/plane'
 import { matchLaps } from './laps/recut'
 import { readLines } from './circuits'
 import { sendJob } from './jobs'
@@ -10,6 +11,8 @@ import type { Transaction } from './db/transactions'
 
 /** What a new cut changes of a lap that was there before; the rest is a person's. */
 const CUT_COLUMNS = ['outing_id', 'number', 'kind', 'start_s', 'time_s', 'first_sample', 'last_sample', 'flags']
+
+const NOTHING: CutResult = { laps: [], lines: [], warnings: [] }
 
 export interface LogPath {
   timeS: Float64Array
@@ -26,14 +29,22 @@ export interface LogPart {
   layout_id: string
 }
 
-/** The part of a log with the layout it was driven on. */
-export function readParts(db: Transaction, where: { logId?: string, layoutId?: string }): Promise<LogPart[]> {
+/**
+ * Parts of a log, or of the logs of a layout, with the layout they were driven on. Their outings are locked against
+ * being moved to another layout until the transaction ends.
+ */
+export function readParts(
+  db: Transaction,
+  where: { logId?: string, layoutId?: string, pending?: boolean },
+): Promise<LogPart[]> {
   return db('log_parts as p').join('outings as o', 'o.id', 'p.outing_id')
     .modify((query) => {
       if (where.logId) query.where('p.log_id', where.logId)
       if (where.layoutId) query.where('o.layout_id', where.layoutId)
+      if (where.pending) query.where('p.cut_pending', true)
     })
-    .orderBy('p.id').select<LogPart[]>('p.id', 'p.team_id', 'p.log_id', 'p.outing_id', 'o.layout_id')
+    .orderBy('p.id').forShare('o')
+    .select<LogPart[]>('p.id', 'p.team_id', 'p.log_id', 'p.outing_id', 'o.layout_id')
 }
 
 /**
@@ -59,9 +70,7 @@ export async function cutPart(db: Transaction, part: LogPart, path: LogPath): Pr
   const layout = await db('layouts').where('id', part.layout_id).forUpdate()
     .first<{ direction: DrivingDirection | null, length_m: number | null }>('direction', 'length_m')
   const lines = await readLines(db, part.layout_id)
-  const cut: CutResult = lines.length
-    ? cutLaps(path, lines, { direction: layout.direction })
-    : { laps: [], lines: [], warnings: [] }
+  const cut = lines.length ? cutOrSay(path, lines, layout.direction) : NOTHING
   await storeLaps(db, part, path, cut.laps)
   await db('log_parts').where('id', part.id).update({ cut_pending: false, warnings: JSON.stringify(cut.warnings) })
   if (layout.length_m === null) {
@@ -69,6 +78,17 @@ export async function cutPart(db: Transaction, part: LogPart, path: LogPath): Pr
     if (lengthM !== null) await db('layouts').where('id', part.layout_id).update({ length_m: lengthM })
   }
   return lines.length ? 'ready' : 'no_lines'
+}
+
+/** The cut; lines that make no laps of this log are a warning, not the end of it. */
+function cutOrSay(path: LogPath, lines: TimingLine[], direction: DrivingDirection | null): CutResult {
+  try {
+    return cutLaps(path, lines, { direction })
+  }
+  catch (error) {
+    if (!(error instanceof LapsError)) throw error
+    return { ...NOTHING, warnings: [{ code: error.code, message: error.message }] }
+  }
 }
 
 async function storeLaps(db: Transaction, part: LogPart, path: LogPath, laps: readonly CutLap[]): Promise<void> {
@@ -113,6 +133,16 @@ function bestLapLength(path: LogPath, laps: readonly CutLap[]): number | null {
   const timed = laps.filter(lap => lap.kind === 'timed' && !lap.flags.length)
   if (!timed.length) return null
   const best = timed.reduce((a, b) => b.timeS < a.timeS ? b : a)
+  try {
+    return lapLength(path, best)
+  }
+  catch (error) {
+    if (error instanceof LapsError) return null
+    throw error
+  }
+}
+
+function lapLength(path: LogPath, best: CutLap): number {
   const plane = makePlane(path.latitudeDeg[0]!, path.longitudeDeg[0]!)
   const { xM, yM } = toPlane(plane, path.latitudeDeg, path.longitudeDeg)
   return lapPath(path.timeS, xM, yM, best.startS, best.timeS).stationM.at(-1)!

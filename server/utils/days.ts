@@ -1,9 +1,12 @@
+import { z } from 'zod'
+import { dateSchema, idSchema } from '../../shared/schemas/common'
 import type { Day, DayListItem } from '../../shared/schemas/days'
 import type { Transaction } from './db/transactions'
 import { readOutingsOfDay } from './outings'
 import { notFound, ProblemError } from './problems'
 
 const PAGE = 50
+const cursorSchema = z.tuple([dateSchema, idSchema])
 
 interface DayRow {
   id: string
@@ -42,7 +45,7 @@ export async function listDays(
   teamId: string,
   cursor: string | undefined,
 ): Promise<{ items: DayListItem[], next: string | null }> {
-  const timed = 'l.kind = \'timed\' and not l.excluded'
+  const timed = 'l.kind = \'timed\' and not l.excluded and not l.flags @> \'["gap_at_line"]\''
   const rows = await db('track_days as d').join('circuits as c', 'c.id', 'd.circuit_id').where('d.team_id', teamId)
     .modify((query) => {
       if (cursor) query.whereRaw('(d.date, d.id) < (?::date, ?::uuid)', splitCursor(cursor))
@@ -62,7 +65,8 @@ export async function listDays(
 }
 
 function splitCursor(cursor: string): [string, string] {
-  const match = /^(\d{4}-\d{2}-\d{2}),([0-9a-f-]{36})$/.exec(cursor)
-  if (!match) throw new ProblemError(400, 'The address is not right', 'The cursor is not one that a list of days gave.')
-  return [match[1]!, match[2]!]
+  const [date, id] = cursor.split(',')
+  const parsed = cursorSchema.safeParse([date, id])
+  if (!parsed.success) throw new ProblemError(400, 'The address is not right', 'The cursor is not one that a list of days gave.')
+  return parsed.data
 }

@@ -3,20 +3,27 @@ import PgBoss from 'pg-boss'
 import { databaseUrl } from './db/pool'
 import type { Transaction } from './db/transactions'
 
-/** The jobs of the worker. Each names its team, in whose name its queries run. */
+/**
+ * The jobs of the worker. Each names its team, in whose name its queries run. A job that failed at its last try, or
+ * whose worker was killed at it, comes back as the one of its name with `-failed`.
+ */
 export interface Jobs {
   'log-read': { teamId: string, logId: string }
+  'log-read-failed': Jobs['log-read']
   'layout-cut': { teamId: string, layoutId: string }
+  'layout-cut-failed': Jobs['layout-cut']
 }
 export type JobName = keyof Jobs
-
-export const RETRY_LIMIT = 3
 
 const held = globalThis as typeof globalThis & { lapwrightJobs?: Promise<PgBoss> }
 
 /** The queue of this process. Its tables are made by the owner's migration, never here. */
 export function jobQueue(options: { supervise: boolean } = { supervise: false }): Promise<PgBoss> {
-  held.lapwrightJobs ??= startQueue(options.supervise)
+  held.lapwrightJobs ??= startQueue(options.supervise).catch((error) => {
+    // The database may be back at the next job; a failed start must not be remembered.
+    held.lapwrightJobs = undefined
+    throw error
+  })
   return held.lapwrightJobs
 }
 
@@ -51,17 +58,17 @@ export async function sendJob<N extends JobName>(db: Transaction, name: N, data:
   await boss.send(name, data, { db: { executeSql: (text, values) => connection.query(text, values) } })
 }
 
-/** Takes jobs off the queue one at a time until the process ends. `lastTry` is true when a failure is final. */
+/** Takes jobs off the queue one at a time until the process ends. */
 export async function workOn<N extends JobName>(
   name: N,
-  run: (data: Jobs[N], lastTry: boolean) => Promise<void>,
+  run: (data: Jobs[N]) => Promise<void>,
 ): Promise<void> {
   const boss = await jobQueue({ supervise: true })
   const options = { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: 0.5 } as const
   await boss.work<Jobs[N]>(name, options, async ([job]) => {
     if (!job) return
     try {
-      await run(job.data, job.retryCount >= RETRY_LIMIT)
+      await run(job.data)
     }
     catch (error) {
       console.error(`job ${name} ${job.id}, try ${job.retryCount + 1} (process ${process.pid}):`, error)

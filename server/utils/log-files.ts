@@ -26,6 +26,8 @@ export interface LogSink {
   stream: Writable
   /** Resolves when every byte is on the disk; rejects with what went wrong. */
   done: Promise<StoredFile>
+  /** Resolves when nothing writes any more, however it ended: only then can the file be removed for good. */
+  closed: () => Promise<void>
 }
 
 /**
@@ -77,7 +79,7 @@ export async function openLogSink(key: string): Promise<LogSink> {
   })
   // Whoever awaits `done` learns of it; until then it must not count as unhandled.
   done.catch(() => undefined)
-  return { stream, done }
+  return { stream, done, closed: async () => flow?.catch(() => undefined) }
 }
 
 /** Passes bytes on, counted and hashed; more than the limit is an error. */

@@ -1,3 +1,5 @@
+import type { Server } from 'node:http'
+import type { Socket } from 'node:net'
 import formidable, { errors as formidableErrors } from 'formidable'
 import type { H3Event } from 'h3'
 import { LOG_LIMIT_BYTES } from '../../shared/gzip'
@@ -6,6 +8,8 @@ import { ProblemError } from './problems'
 
 /** How many bytes of a refused upload are read on, so that a browser comes to reading the answer. */
 const DRAIN_BYTES = 2.2 * LOG_LIMIT_BYTES
+/** An upload of which nothing came for so long is given up. */
+const IDLE_MS = 60_000
 
 export interface Upload extends StoredFile {
   fileName: string
@@ -20,6 +24,7 @@ export async function receiveLog(event: H3Event, storageKey: string): Promise<Up
     throw new ProblemError(415, 'A file expected', 'Send the log as multipart/form-data with one part named file.')
   }
   const sink = await openLogSink(storageKey)
+  allowSlowUpload(event)
   let fileName: string | undefined
   const form = formidable({
     maxFiles: 1,
@@ -43,10 +48,21 @@ export async function receiveLog(event: H3Event, storageKey: string): Promise<Up
   }
   catch (error) {
     sink.stream.destroy()
+    await sink.closed()
     const problem = await uploadProblem(error, sink)
     await drain(event)
     throw problem
   }
+}
+
+/**
+ * Node ends every request after five minutes, which a paddock's line needs for 50 MB. An upload may take as long as
+ * bytes keep coming.
+ */
+function allowSlowUpload(event: H3Event): void {
+  const { server } = event.node.req.socket as Socket & { server?: Server }
+  if (server) server.requestTimeout = 0
+  event.node.req.setTimeout(IDLE_MS, () => event.node.req.destroy())
 }
 
 async function uploadProblem(error: unknown, sink: LogSink): Promise<unknown> {

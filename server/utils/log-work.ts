@@ -3,7 +3,7 @@ import { cleanLog } from './laps/clean'
 import { LapsError } from './laps/errors'
 import { createLogReader } from './laps/read'
 import type { CleanLog, ReadLog } from './laps/types'
-import { readChannels, writeChannels } from './channels'
+import { writeChannels } from './channels'
 import { cutPart, readParts, type LogPath } from './cutting'
 import { asTeam, type Transaction } from './db/transactions'
 import type { Jobs } from './jobs'
@@ -11,7 +11,7 @@ import { readLogFile } from './log-files'
 import { tellProgress } from './progress'
 
 /** Where each step of reading a log begins, as a share of the whole; reading the bytes takes most of it. */
-const STEP_STARTS: Record<LogStep, number> = { read: 0, clean: 0.6, project: 0.7, cross: 0.72, lap: 0.75, store: 0.8 }
+const STEP_STARTS: Record<LogStep, number> = { read: 0, clean: 0.6, cut: 0.75, store: 0.85 }
 const PROGRESS_EVERY_MS = 250
 
 interface LogRow {
@@ -19,12 +19,13 @@ interface LogRow {
   storage_key: string
   size_bytes: number
   status: LogStatus
+  header_key: string | null
   preview: LogPreview
   column_map: ColumnMap
 }
 
 /** Reads a log from its file and cuts it into laps; the same file gives the same laps however often it runs. */
-export async function readLogJob({ teamId, logId }: Jobs['log-read'], lastTry: boolean): Promise<void> {
+export async function readLogJob({ teamId, logId }: Jobs['log-read']): Promise<void> {
   const log = await asTeam(teamId, async (db) => {
     const [row] = await db('logs').where('id', logId).whereIn('status', ['queued', 'processing'])
       .update({ status: 'processing' }).returning<LogRow[]>('*')
@@ -34,12 +35,13 @@ export async function readLogJob({ teamId, logId }: Jobs['log-read'], lastTry: b
   try {
     const clean = await readAndClean(teamId, log)
     if (!clean) return
-    await tell(log.id, 'project', 1)
     const status = await asTeam(teamId, db => store(db, log, clean))
     if (status) await tellProgress({ logId: log.id, status, step: null, fraction: 1 })
   }
   catch (error) {
-    await refuse(teamId, log.id, error, lastTry)
+    // A fault of ours is tried again; a log that cannot be used stays so however often it is read.
+    if (!(error instanceof LapsError)) throw error
+    await refuse(teamId, log.id, { code: error.code, message: error.message, row: error.row })
   }
 }
 
@@ -66,15 +68,20 @@ function stillWanted(teamId: string, logId: string): Promise<boolean> {
   return asTeam(teamId, async db => Boolean(await db('logs').where({ id: logId, status: 'processing' }).first('id')))
 }
 
-/** One transaction writes channels, laps and status: until it commits the log has no laps. */
+/**
+ * One transaction cuts the laps and writes them with the channels: until it commits the log has no laps. Its columns
+ * are remembered now, when they are known to work.
+ */
 async function store(db: Transaction, log: LogRow, clean: CleanLog): Promise<LogStatus | null> {
-  const held = await db('logs').where({ id: log.id, status: 'processing' }).forUpdate().first<{ team_id: string } | undefined>('team_id')
+  const held = await db('logs').where({ id: log.id, status: 'processing' }).forUpdate()
+    .first<{ team_id: string } | undefined>('team_id')
   if (!held) return null
-  await tell(log.id, 'store', 0)
-  await writeChannels(db, held.team_id, log.id, clean.channels)
+  await tell(log.id, 'cut', 0)
   const path = pathOf(clean)
   let status: LogStatus = 'ready'
   for (const part of await readParts(db, { logId: log.id })) status = await cutPart(db, part, path)
+  await tell(log.id, 'store', 0)
+  await writeChannels(db, held.team_id, log.id, clean.channels)
   await db('logs').where('id', log.id).update({
     status,
     problem: null,
@@ -86,67 +93,42 @@ async function store(db: Transaction, log: LogRow, clean: CleanLog): Promise<Log
     problems: JSON.stringify(clean.problems satisfies LogProblem[]),
     gaps: JSON.stringify(clean.gaps),
   })
+  if (log.header_key !== null) {
+    const known = { column_map: JSON.stringify(log.column_map), updated_at: db.fn.now() }
+    await db('column_maps').insert({ team_id: held.team_id, header_key: log.header_key, ...known })
+      .onConflict(['team_id', 'header_key']).merge(known)
+  }
   return status
 }
 
 function pathOf(clean: CleanLog): LogPath {
   const samples = (name: string) => clean.channels.find(channel => channel.name === name)!.samples as Float64Array
-  return { timeS: samples('time'), latitudeDeg: samples('latitude'), longitudeDeg: samples('longitude'), gaps: clean.gaps }
+  return {
+    timeS: samples('time'),
+    latitudeDeg: samples('latitude'),
+    longitudeDeg: samples('longitude'),
+    gaps: clean.gaps,
+  }
 }
 
-/** A log that cannot be used says why; a fault of ours is tried again, and told at the last try. */
-async function refuse(teamId: string, logId: string, error: unknown, lastTry: boolean): Promise<void> {
-  const known = error instanceof LapsError
-  if (!known && !lastTry) {
-    await asTeam(teamId, db => db('logs').where({ id: logId, status: 'processing' }).update({ status: 'queued' }))
-    throw error
-  }
-  const problem = known
-    ? { code: error.code, message: error.message, row: error.row }
-    : { code: 'internal', message: 'The log could not be read through a fault of ours, not of the file. It is kept; try again with “Read again”.' }
-  await asTeam(teamId, db => db('logs').where({ id: logId, status: 'processing' }).update({ status: 'refused', problem: JSON.stringify(problem) }))
+/** The log says why it cannot be used; laps and channels of an earlier reading go, not being of these columns. */
+async function refuse(teamId: string, logId: string, problem: LogProblem): Promise<void> {
+  await asTeam(teamId, async (db) => {
+    const changed = await db('logs').where('id', logId).whereIn('status', ['queued', 'processing'])
+      .update({ status: 'refused', problem: JSON.stringify(problem), problems: '[]', gaps: '[]' })
+    if (!changed) return
+    const parts = await db('log_parts').where('log_id', logId).update({ warnings: '[]', cut_pending: false })
+      .returning<{ id: string }[]>('id')
+    await db('laps').where('team_id', teamId).whereIn('log_part_id', parts.map(part => part.id)).delete()
+    await db('channels').where({ team_id: teamId, log_id: logId }).delete()
+  })
   await tellProgress({ logId, status: 'refused', step: null, fraction: 1 })
-  if (!known) throw error
 }
 
-/** Lines have changed: every log driven on the layout is cut again from its stored channels. */
-export async function cutLayoutJob({ teamId, layoutId }: Jobs['layout-cut'], lastTry: boolean): Promise<void> {
-  try {
-    await cutLayout(teamId, layoutId)
-  }
-  catch (error) {
-    // Given up: the laps stay as they were, and nobody waits for others any more.
-    if (lastTry) await asTeam(teamId, db => stopWaiting(db, layoutId))
-    throw error
-  }
-}
-
-async function stopWaiting(db: Transaction, layoutId: string): Promise<void> {
-  const ids = (await readParts(db, { layoutId })).map(part => part.id)
-  await db('log_parts').whereIn('id', ids).update({ cut_pending: false })
-}
-
-async function cutLayout(teamId: string, layoutId: string): Promise<void> {
-  const parts = await asTeam(teamId, db => readParts(db, { layoutId }))
-  for (const { id, log_id: logId } of parts) {
-    const status = await asTeam(teamId, async (db) => {
-      const log = await db('logs').where('id', logId).whereIn('status', ['no_lines', 'ready']).forUpdate()
-        .first<{ gaps: LogPath['gaps'] } | undefined>('gaps')
-      const part = (await readParts(db, { logId })).find(item => item.id === id)
-      if (!log || !part) return null
-      const found = await cutPart(db, part, await readPath(db, teamId, logId, log.gaps))
-      await db('logs').where('id', logId).update({ status: found })
-      return found
-    })
-    if (status) await tellProgress({ logId, status, step: null, fraction: 1 })
-  }
-}
-
-/** The path of a log from its stored channels. */
-export async function readPath(db: Transaction, teamId: string, logId: string, gaps: LogPath['gaps']): Promise<LogPath> {
-  const channels = await readChannels(db, teamId, logId, ['time', 'latitude', 'longitude'])
-  const samples = (name: string) => channels.get(name)!.samples as Float64Array
-  return { timeS: samples('time'), latitudeDeg: samples('latitude'), longitudeDeg: samples('longitude'), gaps }
+/** The job has failed, or its worker was killed, as often as it may. */
+export function giveUpLog({ teamId, logId }: Jobs['log-read-failed']): Promise<void> {
+  const message = 'The log could not be read through a fault of ours, not of the file. It is kept: try “Read again”.'
+  return refuse(teamId, logId, { code: 'internal', message })
 }
 
 async function tell(logId: string, step: LogStep, share: number): Promise<void> {

@@ -66,6 +66,9 @@ export function problemOf(error: unknown): ProblemError | null {
     const errors = clash.path ? [{ path: clash.path, message: clash.detail }] : undefined
     return new ProblemError(clash.status, clash.title, clash.detail, { errors })
   }
+  if (code === '22021' || code === '22P05') {
+    return new ProblemError(400, 'Not to be kept', 'A text holds a character that cannot be stored, such as NUL. Take it out.')
+  }
   if (code === '42501') return new ProblemError(403, 'Not yours to do', 'Your role in this team does not allow this.')
   return null
 }

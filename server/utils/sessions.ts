@@ -6,6 +6,15 @@ import type { H3Event } from 'h3'
  * a browser would not send it back over plain http on loopback.
  */
 export async function startSession(event: H3Event, userId: string, epoch: number): Promise<void> {
+  await replaceUserSession(event, { user: { id: userId }, epoch }, { cookie: cookie() })
+}
+
+/** Ends the session of this browser. */
+export async function endSession(event: H3Event): Promise<void> {
+  await clearUserSession(event, { cookie: cookie() })
+}
+
+function cookie() {
   const secure = (process.env.LAPWRIGHT_PUBLIC_URL ?? '').startsWith('https:')
-  await replaceUserSession(event, { user: { id: userId }, epoch }, { cookie: { secure, sameSite: 'lax', httpOnly: true } })
+  return { secure, sameSite: 'lax', httpOnly: true } as const
 }

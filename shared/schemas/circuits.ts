@@ -72,7 +72,7 @@ export const layoutSchema = z.object({
   circuitName: z.string(),
   name: z.string(),
   direction: z.enum(DIRECTIONS).nullable(),
-  /** Length of the best lap's path so far, metres; null before the first lap. */
+  /** Distance driven in the fastest lap of the first log that gave one since the lines changed, metres; else null. */
   lengthM: z.number().nullable(),
   /** Goes up with every change of the lines. */
   linesVersion: z.int(),

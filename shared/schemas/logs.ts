@@ -1,10 +1,10 @@
 import { z } from 'zod'
 
-export const LOG_STATUSES = ['uploading', 'mapping', 'queued', 'processing', 'no_lines', 'ready', 'refused', 'cancelled'] as const
+export const LOG_STATUSES = ['uploading', 'mapping', 'queued', 'processing', 'no_lines', 'ready', 'refused'] as const
 export type LogStatus = (typeof LOG_STATUSES)[number]
 
 /** The steps a person sees while a log is read, in order. */
-export const LOG_STEPS = ['read', 'clean', 'project', 'cross', 'lap', 'store'] as const
+export const LOG_STEPS = ['read', 'clean', 'cut', 'store'] as const
 export type LogStep = (typeof LOG_STEPS)[number]
 
 /** One column of a file and the channel it becomes. `channel: null` leaves the column in the file only. */

@@ -83,30 +83,18 @@ export function formatDate(date: string | null | undefined): string {
   return `${DAYS[utc.getUTCDay()]} ${day} ${MONTHS[month - 1]} ${year}`
 }
 
-/** Numbers of an instant as a clock on the wall of that zone shows them. */
-function wallClock(instant: string | null | undefined, timeZone: string): Record<string, string> | null {
-  const milliseconds = Date.parse(instant ?? '')
-  if (Number.isNaN(milliseconds)) return null
-  const parts = new Intl.DateTimeFormat('en-GB', {
-    timeZone, hourCycle: 'h23', year: 'numeric', month: '2-digit', day: '2-digit', hour: '2-digit', minute: '2-digit',
-  }).formatToParts(milliseconds)
-  return Object.fromEntries(parts.map(part => [part.type, part.value]))
-}
-
 /**
  * Time of day, `13:20`, in the zone of the circuit.
  * @param instant RFC 3339
  * @param timeZone IANA name
  */
 export function formatTime(instant: string | null | undefined, timeZone: string): string {
-  const clock = wallClock(instant, timeZone)
-  return clock ? `${clock.hour}:${clock.minute}` : MISSING
-}
-
-/** Date and time of day of an instant in a zone, `Sat 12 Sep 2026, 13:20`. */
-export function formatDateTime(instant: string | null | undefined, timeZone: string): string {
-  const clock = wallClock(instant, timeZone)
-  return clock ? `${formatDate(`${clock.year}-${clock.month}-${clock.day}`)}, ${clock.hour}:${clock.minute}` : MISSING
+  const milliseconds = Date.parse(instant ?? '')
+  if (Number.isNaN(milliseconds)) return MISSING
+  const parts = new Intl.DateTimeFormat('en-GB', { timeZone, hourCycle: 'h23', hour: '2-digit', minute: '2-digit' })
+    .formatToParts(milliseconds)
+  const part = (type: 'hour' | 'minute') => parts.find(one => one.type === type)?.value
+  return `${part('hour')}:${part('minute')}`
 }
 
 /** A file's size in decimal units: `812 B`, `3.2 kB`, `18.4 MB`. */
@@ -126,13 +114,15 @@ export function formatSize(bytes: Maybe): string {
  * A setting of a setup sheet as it is read aloud: pressures in bar keep two digits, other figures as many as they have.
  * @param value already in the unit in which it is shown; null is a setting that was left open
  * @param unit the unit of the field, or '' for words
+ * @param plus whether a figure above zero is written with its sign
  */
-export function formatSetting(value: number | string | null | undefined, unit = ''): string {
+export function formatSetting(value: number | string | null | undefined, unit = '', plus = false): string {
   if (value === null || value === undefined || value === '') return 'not set'
   if (typeof value === 'string') return value
   if (!Number.isFinite(value)) return MISSING
   const own = decimals(value)
-  return formatNumber(value, unit === 'bar' ? Math.max(2, own) : own)
+  const digits = unit === 'bar' ? Math.max(2, own) : own
+  return plus ? formatDifference(value, digits) : formatNumber(value, digits)
 }
 
 /** Decimals a figure has, at most three. */
@@ -149,9 +139,14 @@ const WORDS = [
   'no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve',
 ] as const
 
-/** A count within a sentence: in words up to twelve, `two laps`, in figures beyond, `25 laps`. */
+/** A number within a sentence: in words up to twelve, in figures beyond. */
+export function numberInWords(count: number): string {
+  return WORDS[count] ?? String(count)
+}
+
+/** A count within a sentence: `two laps`, `25 laps`. */
 export function countInWords(count: number, one: string, many = `${one}s`): string {
-  return `${WORDS[count] ?? count} ${count === 1 ? one : many}`
+  return `${numberInWords(count)} ${count === 1 ? one : many}`
 }
 
 /** The same words with a capital at their beginning. */

@@ -42,11 +42,11 @@ const ROUTES: Record<string, Case> = {
   'circuits/index.get': { path: of => `/api/circuits?teamId=${of.teamId}`, expected: READ },
   'circuits/index.post': { path: of => `/api/circuits?teamId=${of.teamId}`, body: () => ({ name: unique(), timeZone: 'UTC' }), expected: WRITE },
   'circuits/[id].get': { path: of => `/api/circuits/${of.circuitId}`, expected: READ },
-  'circuits/[id].patch': { path: of => `/api/circuits/${of.circuitId}`, body: () => ({ name: unique(), timeZone: 'UTC' }), expected: WRITE },
+  'circuits/[id].put': { path: of => `/api/circuits/${of.circuitId}`, body: () => ({ name: unique(), timeZone: 'UTC' }), expected: WRITE },
   'circuits/[id]/layouts.post': { path: of => `/api/circuits/${of.circuitId}/layouts`, body: () => ({ name: unique() }), expected: WRITE },
   'layouts/index.get': { path: of => `/api/layouts?teamId=${of.teamId}`, expected: READ },
   'layouts/[id].get': { path: of => `/api/layouts/${of.layoutId}`, expected: READ },
-  'layouts/[id].patch': { path: of => `/api/layouts/${of.layoutId}`, body: () => ({ name: unique() }), expected: WRITE },
+  'layouts/[id].put': { path: of => `/api/layouts/${of.layoutId}`, body: () => ({ name: unique() }), expected: WRITE },
   'layouts/[id]/logs.get': { path: of => `/api/layouts/${of.layoutId}/logs`, expected: READ },
   // An old version, so that nobody's try changes what the next one meets.
   'layouts/[id]/lines.put': { path: of => `/api/layouts/${of.layoutId}/lines`, body: () => ({ basedOnVersion: 0, lines: [] }), expected: { ...WRITE, driver: 409, owner: 409 } },
@@ -54,16 +54,16 @@ const ROUTES: Record<string, Case> = {
   'cars/index.get': { path: of => `/api/cars?teamId=${of.teamId}`, expected: READ },
   'cars/index.post': { path: of => `/api/cars?teamId=${of.teamId}`, body: () => ({ name: unique() }), expected: CREW },
   'cars/[id].get': { path: of => `/api/cars/${of.carId}`, expected: READ },
-  'cars/[id].patch': { path: of => `/api/cars/${of.carId}`, body: () => ({ name: unique() }), expected: CREW },
+  'cars/[id].put': { path: of => `/api/cars/${of.carId}`, body: () => ({ name: unique() }), expected: CREW },
   'cars/[id]/setups.post': { path: of => `/api/cars/${of.carId}/setups`, body: () => ({ name: 'Another', sheet: emptySheet() }), expected: CREW },
   'setups/[id].get': { path: of => `/api/setups/${of.setupId}`, expected: READ },
   'days/index.get': { path: of => `/api/days?teamId=${of.teamId}`, expected: READ },
   'days/index.post': { path: of => `/api/days?teamId=${of.teamId}`, body: of => ({ circuitId: of.circuitId, date: '2026-10-03' }), expected: WRITE },
   'days/[id].get': { path: of => `/api/days/${of.dayId}`, expected: READ },
-  'days/[id].patch': { path: of => `/api/days/${of.dayId}`, body: of => ({ circuitId: of.circuitId, date: '2026-09-12' }), expected: WRITE },
+  'days/[id].put': { path: of => `/api/days/${of.dayId}`, body: of => ({ circuitId: of.circuitId, date: '2026-09-12' }), expected: WRITE },
   'days/[id]/outings.post': { path: of => `/api/days/${of.dayId}/outings`, body: outing, expected: CREW },
   'outings/[id].get': { path: of => `/api/outings/${of.outingId}`, expected: READ },
-  'outings/[id].patch': { path: of => `/api/outings/${of.outingId}`, body: outing, expected: CREW },
+  'outings/[id].put': { path: of => `/api/outings/${of.outingId}`, body: outing, expected: CREW },
   // JSON is no upload: whoever may upload is told so.
   'outings/[id]/logs.post': { path: of => `/api/outings/${of.outingId}/logs`, body: () => ({}), expected: { ...CREW, crew: 415, driver: 415, owner: 415 } },
   'logs/[id].get': { path: of => `/api/logs/${of.logId}`, expected: READ },
@@ -73,6 +73,7 @@ const ROUTES: Record<string, Case> = {
   'laps/index.get': { path: of => `/api/laps?teamId=${of.teamId}&layoutId=${of.layoutId}`, expected: READ },
   'laps/[id].patch': { path: of => `/api/laps/${of.lapIds[0]}`, body: () => ({ excluded: false }), expected: WRITE },
   'compare.get': { path: of => `/api/compare?lap=${of.lapIds[0]}&against=${of.lapIds[1]}`, expected: READ },
+  '[...]': { path: () => '/api/nothing-here', expected: { nobody: 404, other: 404, coach: 404, crew: 404, driver: 404, owner: 404 } },
   // Last, since it takes the log away.
   'logs/[id].delete': { path: of => `/api/logs/${of.logId}`, expected: { ...CREW, crew: 204, driver: 404, owner: 404 } },
 }
@@ -118,7 +119,7 @@ describe('who may use which route', () => {
   })
 
   it.each(Object.entries(ROUTES))('%s', async (name, route) => {
-    const method = name.split('.').at(-1)!.toUpperCase()
+    const method = name === '[...]' ? 'GET' : name.split('.').at(-1)!.toUpperCase()
     for (const asker of ASKERS) {
       const status = await statusOf(await clients[asker](), method, route.path(team), route.body?.(team))
       const expected = route.expected[asker]
@@ -136,7 +137,10 @@ describe('who may use which route', () => {
     expect((await stranger.client.send('GET', '/api/days?teamId=nonsense')).status).toBe(400)
   })
 
-  it('answers an unknown route with 404', async () => {
-    expect((await makeClient(baseUrl()).send('GET', '/api/nothing-here')).status).toBe(404)
+  it('answers an unknown route, or a known one asked wrongly, with a problem', async () => {
+    for (const [method, path] of [['GET', '/api/nothing-here'], ['DELETE', '/api/me']] as const) {
+      const { status, headers } = await makeClient(baseUrl()).send(method, path)
+      expect([status, headers.get('content-type')]).toEqual([404, 'application/problem+json'])
+    }
   })
 })

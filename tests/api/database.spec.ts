@@ -1,7 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import type { Knex } from 'knex'
 import { connect } from '../support/database'
-import { fixture, garage, register, uploadAndRead, type Garage, type Registered } from '../support/team'
+import { fixture, fixtureLines, garage, register, saveLines, uploadAndRead, type Garage, type Registered } from '../support/team'
 
 /** Tables that hold rows of a team, and how a row of another team would be written into each. */
 const TENANT_TABLES = ['circuits', 'layouts', 'timing_lines', 'cars', 'setup_revisions', 'track_days', 'outings', 'logs', 'log_parts', 'column_maps', 'channels', 'laps', 'lap_sectors', 'memberships', 'teams', 'users'] as const
@@ -16,6 +16,7 @@ beforeAll(async () => {
   owner = connect('owner')
   own = await garage()
   stranger = await register('Iggy Sample')
+  await saveLines(own, fixtureLines('harrow-fell-lines.geojson'))
   await uploadAndRead(own, own.outingId, 'harrow-fell.csv', fixture('harrow-fell.csv'))
 })
 
@@ -77,8 +78,11 @@ describe('without a person, and as a stranger', () => {
         expect(foreign, `${name} reads ${table}`).toEqual([])
       }
     }
-    // The owner of the rows sees them, so the emptiness above is no accident.
-    expect(await as(own.me.id, db => db('channels').select('name'))).not.toEqual([])
+    // The owner of the rows sees some in every table, so the emptiness above is no accident.
+    for (const table of TENANT_TABLES) {
+      const rows = await as(own.me.id, db => db(table).select(VISIBLE[table] ?? ['*']).limit(1))
+      expect(rows.length, `the owner reads ${table}`).toBe(1)
+    }
   })
 
   it('changes and removes nothing', async () => {
@@ -135,7 +139,9 @@ describe('roles at the database', () => {
     ] as const) {
       const member = await register(`A ${role}`)
       await owner('memberships').insert({ team_id: own.teamId, user_id: member.me.id, role })
-      expect((await as(member.me.id, db => db('laps').where('team_id', own.teamId).select('id'))).length, role).toBe(0)
+      expect((await as(member.me.id, db => db('laps').where('team_id', own.teamId).select('id'))).length, role).toBeGreaterThan(5)
+      const excluded = await as(member.me.id, db => db('laps').where('team_id', own.teamId).update({ excluded: true, excluded_reason: 'x' }))
+      expect(excluded > 0, `${role} excludes laps`).toBe(role === 'driver')
       expect((await as(member.me.id, db => db('outings').where('team_id', own.teamId).select('id'))).length, role).toBe(1)
       const write = as(member.me.id, db => db(table).insert({ team_id: own.teamId, ...row }))
       if (allowed) await write

@@ -61,6 +61,7 @@ describe('a new password', () => {
     const changed = await client.send('POST', '/api/password', { currentPassword: PASSWORD, newPassword: 'another long password' })
     expect(changed.status).toBe(204)
     expect((await elsewhere.send('GET', '/api/me')).status).toBe(401)
+    expect((await elsewhere.send('GET', '/api/_auth/session')).status).toBe(401)
     expect((await client.send('GET', '/api/me')).status).toBe(200)
     expect((await elsewhere.send('POST', '/api/sign-in', { email, password: PASSWORD })).status).toBe(401)
     expect((await elsewhere.send('POST', '/api/sign-in', { email, password: 'another long password' })).status).toBe(200)

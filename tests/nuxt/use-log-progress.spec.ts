@@ -57,8 +57,10 @@ describe('useLogProgress', () => {
     follow(ID(1))
     const [stream] = FakeStream.opened
     expect(stream?.url).toBe(`/api/logs/${ID(1)}/events`)
-    stream?.tell(ID(1), 'processing', 'lap', 0.62)
-    expect(progress[ID(1)]).toMatchObject({ step: 'lap', fraction: 0.62 })
+    stream?.tell(ID(1), 'processing', 'cut', 0.62)
+    expect(progress[ID(1)]).toMatchObject({ step: 'cut', fraction: 0.62 })
+    stream?.tell(ID(1), 'processing', null, 0)
+    expect(progress[ID(1)]).toMatchObject({ step: 'cut', fraction: 0.62 })
     expect(settled).not.toHaveBeenCalled()
     stream?.tell(ID(1), 'ready', null, 1)
     expect(settled).toHaveBeenCalledExactlyOnceWith(ID(1))

@@ -3,8 +3,8 @@
  * them is known in closed form. No figures from the project's own code come in here but the degrees of a plane.
  */
 import type { Gap } from '../../server/utils/laps/hermite'
-import { makePlane, toDegrees } from '../../server/utils/laps/project'
-import type { Plane } from '../../server/utils/laps/project'
+import { makePlane, toDegrees } from '../../shared/plane'
+import type { Plane } from '../../shared/plane'
 import type { TimingLine } from '../../server/utils/laps/types'
 
 export interface Piece { lengthM: number, curvature1pm: number }

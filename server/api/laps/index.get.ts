@@ -2,6 +2,9 @@ import type { LapChoice } from '../../../shared/schemas/days'
 import { idSchema, teamQuery } from '../../../shared/schemas/common'
 import { defineApiHandler } from '../../utils/api'
 
+/** A lap that may be a best: nobody left it out, and its line did not lie in a gap. */
+const COUNTS = 'not l.excluded and not l.flags @> \'["gap_at_line"]\''
+
 interface Row {
   id: string
   number: number
@@ -32,7 +35,7 @@ export default defineApiHandler({
       .orderBy([{ column: 'd.date', order: 'desc' }, { column: 'o.number', order: 'desc' }, 'l.start_s', 'l.number']).limit(1000)
       .select<Row[]>('l.id', 'l.number', 'l.time_s', 'l.excluded', 'o.id as outing_id', 'o.number as outing_number', 'd.id as day_id', 'd.date',
         'y.id as layout_id', 'y.name as layout_name', 'c.name as circuit_name', 'r.name as car_name', 'u.name as driver_name', 's.number as setup_number',
-        db.raw('(not l.excluded and l.time_s = min(l.time_s) filter (where not l.excluded) over (partition by o.id)) as is_best'))
+        db.raw(`(${COUNTS} and l.time_s = min(l.time_s) filter (where ${COUNTS}) over (partition by o.id)) as is_best`))
     return { items: rows.map(choiceOf) }
   },
 })

@@ -1,3 +1,5 @@
+import { makePlane, toPlane } from '../../../shared/plane'
+import type { Plane } from '../../../shared/plane'
 import { findBrakings } from './braking'
 import type { Braking } from './braking'
 import { LapsError } from './errors'
@@ -5,8 +7,6 @@ import { interpolate } from './interpolate'
 import { deriveMotion } from './motion'
 import { lapPath, placeOnPath } from './place'
 import type { LapPath } from './place'
-import { makePlane, toPlane } from './project'
-import type { Plane } from './project'
 
 /** Values further apart are not joined by a straight line, unless they are neighbours. */
 const BRIDGE_S = 0.5

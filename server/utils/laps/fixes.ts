@@ -1,6 +1,7 @@
 import { median } from 'simple-statistics'
 
-const EARTH_M_PER_DEG = 111_195
+/** Metres in a degree of latitude on a sphere as large as the earth, good to 0.5 %. */
+export const EARTH_M_PER_DEG = 111_195
 const TEN_G_MPS2 = 98.0665
 /** Below this a car stands, and a position that stays the same is a measurement and not a repeat. */
 const STANDING_MPS = 0.5

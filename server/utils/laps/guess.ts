@@ -5,6 +5,7 @@ import { channelKind, channelSlug } from '../../../shared/channels'
 import { ALIASES, ALIASES_WITH_UNIT, DEVICES } from './aliases'
 import { parseClock } from './clock'
 import { cellNumber, isMissing } from './numbers'
+import { printable } from './text'
 import { guessUnit, speedUnitFromPath } from './unit-guess'
 import { headerParts, knownUnit, suffixUnits, words } from './units'
 
@@ -40,6 +41,7 @@ const byAlias = aliasIndex(ALIASES)
 const byAliasWithUnit = aliasIndex(ALIASES_WITH_UNIT)
 const LONGEST_NAME = 63
 const LONGEST_UNIT = 20
+const LONGEST_VALUE = 200
 
 function aliasIndex(aliases: Readonly<Record<string, readonly string[]>>): ReadonlyMap<string, readonly string[]> {
   const index = new Map<string, string[]>()
@@ -74,7 +76,7 @@ export function guessColumns(found: readonly FoundColumn[], mark: DecimalMark, n
     index,
     source,
     ...guesses[i]!,
-    firstValues: values.filter(value => !isMissing(value)).slice(0, 3),
+    firstValues: values.filter(value => !isMissing(value)).slice(0, 3).map(value => printable(value, LONGEST_VALUE)),
   }))
 }
 
@@ -211,7 +213,7 @@ function unrecognised(column: Column, taken: Set<string>, named: boolean): Guess
 function ownNameAndUnit(column: Column): { name: string, unit: string } {
   const parts = headerParts(column.source)
   const stated = column.unitText || parts.unitText
-  if (stated) return { name: parts.name, unit: (knownUnit(stated) ?? stated).slice(0, LONGEST_UNIT) }
+  if (stated) return { name: parts.name, unit: printable(knownUnit(stated) ?? stated, LONGEST_UNIT) }
   // One letter at the end of an unknown name (`sensor_v`) is too little to call it a unit.
   const suffix = suffixUnits(words(parts.name)).find(({ name }) => words(parts.name).slice(name.length).join('').length > 1)
   return suffix ? { name: suffix.name.join(' '), unit: suffix.unit } : { name: parts.name, unit: '' }

@@ -1,3 +1,5 @@
+import { makePlane, toPlane } from '../../../shared/plane'
+import type { Plane } from '../../../shared/plane'
 import { findCrossings, gapAgrees } from './cross'
 import type { PlaneLine } from './cross'
 import { startSense } from './direction'
@@ -7,8 +9,6 @@ import type { Gap } from './hermite'
 import { lineReport } from './line-report'
 import { countingCrossings, lapDistance, odometer, passings, usualSense } from './passes'
 import type { LineUse, Pass } from './passes'
-import { makePlane, toPlane } from './project'
-import type { Plane } from './project'
 import type { CutLap, CutResult, DrivingDirection, TimingLine } from './types'
 
 /** What laps are cut from: the log's own samples. */

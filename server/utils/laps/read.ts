@@ -12,6 +12,7 @@ import { isUsablePosition } from './fixes'
 import { decimalMark } from './numbers'
 import { createRecordSplitter, splitCells } from './records'
 import { createRowSink, FIRST_CAPACITY } from './rows'
+import { columnSource } from './text'
 import { headerParts } from './units'
 
 export interface LogReader {
@@ -93,7 +94,7 @@ function createSlots(preview: LogPreview, map: ColumnMap, mark: DecimalMark): Sl
 
 function checkHeader(cells: readonly string[], slots: readonly Slot[], row: number): void {
   for (const { index, source } of slots) {
-    if ((cells[index] ?? '').replace(/^\uFEFF/, '').trim().slice(0, 200) !== source) refuseHeader(row, source)
+    if (columnSource(cells[index] ?? '') !== source) refuseHeader(row, source)
   }
 }
 

@@ -6,8 +6,12 @@ const CR = 13
 const QUOTE = 34
 const SPACE = 32
 
-/** A quoted field still open this many bytes after its record's start began with a stray quote: its line is plain. */
+/**
+ * A quoted field still open this many bytes, or line ends within quotes, after its record's start began with a stray
+ * quote: its line is plain.
+ */
 const LONGEST_QUOTED_BYTES = 64 * 1024
+const MOST_QUOTED_FEEDS = 100
 /** Lines longer than this are no table; the limit keeps memory flat on a file without line ends. */
 const LONGEST_LINE_BYTES = 1024 * 1024
 
@@ -33,8 +37,9 @@ export interface RecordSplitter {
  * Cuts a stream of ASCII-compatible bytes into records. Chunk boundaries may lie anywhere. Lines end in LF or CRLF; a
  * quoted cell may hold line ends and delimiters; a quote within an unquoted cell is an ordinary character. The record
  * given to `onRecord` is one object used again and again: read it at once. Pushed bytes are neither kept nor changed.
+ * A quote that is not closed within 64 KiB and 100 line ends is a stray one, an ordinary character of its line.
  * @throws {LapsError} 'no_table' when a line is longer than 1 MiB
- * @see RFC 4180 section 2, rules 1, 2 and 5 to 7. O(n), memory of one chunk and one record.
+ * @see RFC 4180 section 2, rules 1, 2 and 5 to 7. O(n), at worst 100 looks at a byte; memory of one chunk and one record.
  */
 export function createRecordSplitter(delimiter: string, onRecord: (record: RecordRange) => void): RecordSplitter {
   const delimiterByte = delimiter.charCodeAt(0)
@@ -103,20 +108,23 @@ function countFeeds(bytes: Uint8Array, start: number, stop: number): number {
   return feeds
 }
 
+/** Where a cell or record ends, or what is known instead: it goes on beyond these bytes, or its quote is a stray one. */
+type Stop = number | 'more' | 'stray'
+
 /**
- * Where a record with quotes stops: the index of its line feed (or the end of a final chunk), 'more' when that is not
- * in these bytes, 'stray' when a quote was opened and never closed.
+ * Where a record with quotes stops: the index of its line feed (or the end of a final chunk). All limits are counted
+ * from the record's start, so that the answer does not hang on the chunks; they bound how often a byte is looked at.
  */
-function quotedStop(bytes: Uint8Array, start: number, delimiter: number, final: boolean): number | 'more' | 'stray' {
+function quotedStop(bytes: Uint8Array, start: number, delimiter: number, final: boolean): Stop {
   let at = start
   let fieldStart = true
+  let feedsLeft = MOST_QUOTED_FEEDS
   while (at < bytes.length) {
     const byte = bytes[at]
     if (byte === QUOTE && fieldStart) {
-      const close = closingQuote(bytes, at + 1, delimiter, final)
-      // Both limits are counted from the record's start, so that the answer does not hang on the chunks.
-      if (close < 0 && !final && bytes.length - start < 2 * LONGEST_QUOTED_BYTES) return 'more'
-      if (close < 0 || close - start > LONGEST_QUOTED_BYTES) return 'stray'
+      const close = closingQuote(bytes, at + 1, start + LONGEST_QUOTED_BYTES, feedsLeft, delimiter, final)
+      if (typeof close !== 'number') return close
+      feedsLeft -= countFeeds(bytes, at, close)
       at = close + 1
       fieldStart = false
       continue
@@ -128,20 +136,26 @@ function quotedStop(bytes: Uint8Array, start: number, delimiter: number, final: 
   return final ? at : 'more'
 }
 
-/** Index of the quote that closes a field, or -1. A quote followed by anything but a cell's end does not close it. */
-function closingQuote(bytes: Uint8Array, start: number, delimiter: number, final: boolean): number {
-  for (let at = bytes.indexOf(QUOTE, start); at >= 0; at = bytes.indexOf(QUOTE, at + 1)) {
+/** Index of the quote that closes a field. A quote followed by anything but a cell's end does not close it. */
+function closingQuote(
+  bytes: Uint8Array, start: number, last: number, mostFeeds: number, delimiter: number, final: boolean,
+): Stop {
+  let feeds = 0
+  for (let at = start; at < bytes.length; at++) {
+    if (at > last) return 'stray'
+    if (bytes[at] === LF && ++feeds > mostFeeds) return 'stray'
+    if (bytes[at] !== QUOTE) continue
     if (bytes[at + 1] === QUOTE) {
       at++
       continue
     }
     let next = at + 1
     while (bytes[next] === SPACE) next++
-    if (next >= bytes.length) return final ? at : -1
+    if (next >= bytes.length) return final ? at : 'more'
     const byte = bytes[next]
     if (byte === delimiter || byte === LF || byte === CR) return at
   }
-  return -1
+  return final || bytes.length > last ? 'stray' : 'more'
 }
 
 /** The cells of one record's text: papaparse where quoting applies, a plain split elsewhere. */

@@ -7,6 +7,7 @@ import { innerEncoding } from './decode'
 import { cellNumber, isMissing, plainNumber } from './numbers'
 import { createProblems } from './problems'
 import { splitCells } from './records'
+import { printable } from './text'
 
 export const FIRST_CAPACITY = 4096
 
@@ -138,7 +139,7 @@ function accept(rows: Rows, { line, ended }: RecordRange, cells: number): void {
   else if (cells < width) rows.problems.add('too_few_cells', { code: 'too_few_cells', message: `The row has fewer cells than the ${width} columns; those that are there are kept.`, row: line })
   for (const { slot, text } of rows.bad) {
     const [code, what] = slot.clock ? ['bad_time', 'a time'] : ['bad_number', 'a number']
-    rows.problems.add(`bad ${slot.index}`, { code, message: `Column "${slot.source}": "${text.slice(0, 40)}" is not ${what}; the cell counts as missing.`, row: line })
+    rows.problems.add(`bad ${slot.index}`, { code, message: `Column "${slot.source}": "${printable(text, 40)}" is not ${what}; the cell counts as missing.`, row: line })
   }
   rows.rowNumbers[rows.count++] = line
 }

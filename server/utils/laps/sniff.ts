@@ -7,11 +7,11 @@ import { LapsError } from './errors'
 import { guessColumns, knownNames } from './guess'
 import { cellNumber, decimalMark, isMissing } from './numbers'
 import { readRecords } from './records'
+import { columnSource } from './text'
 import { knownUnit } from './units'
 
 const DELIMITERS = [',', ';', '\t', '|'] as const
 const MOST_COLUMNS = 400
-const LONGEST_SOURCE = 200
 /** Rows that the guess looks at. */
 const MOST_ROWS = 500
 
@@ -171,7 +171,7 @@ function describeColumns({ lines, width }: Table, { header, units, firstData }: 
   const rows = lines.slice(firstData, firstData + MOST_ROWS)
   return Array.from({ length: nameless ? width : Math.max(width, names.length) }, (_, index) => ({
     index,
-    source: (names[index] ?? '').trim().slice(0, LONGEST_SOURCE),
+    source: columnSource(names[index] ?? ''),
     unitText: units === undefined ? '' : (lines[units]!.cells[index] ?? '').trim().replace(/^[([{<](.*)[)\]}>]$/, '$1'),
     values: rows.map(({ cells }) => (cells[index] ?? '').trim()),
   }))

@@ -1,7 +1,7 @@
 import type { ChannelKind } from '../../../shared/channels'
 import { channelKind } from '../../../shared/channels'
+import { EARTH_M_PER_DEG } from './fixes'
 
-const EARTH_M_PER_DEG = 111_195
 /** How far the unit's speed may be off the path's; the nearest two units, mph and kn, differ by 15 %. */
 const SPEED_AGREES = 0.07
 /** A path shorter than this says nothing about a speed. */

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { findingOf, lapKeys, nameAgainst, numberWord, plain, sectorRows, shownDifferenceS } from '../../../shared/compare-words'
+import { findingOf, lapKeys, nameAgainst, plain, sectorRows } from '../../../shared/compare-words'
+import { shownDifferenceS } from '../../../shared/laps'
 import { someComparison, someLap } from './compare-fixture'
 
 const lead = (changes: Parameters<typeof someComparison>[0] = {}) => plain(findingOf(someComparison(changes)).lead)
@@ -71,15 +72,5 @@ describe('sectorRows', () => {
     // Sums of thousandths in binary: 1e-9 is far below what is shown.
     const sumS = rows.reduce((sum, row) => sum + row.differenceS!, 0)
     expect(sumS).toBeCloseTo(shownDifferenceS(lap.timeS, against.timeS), 9)
-  })
-})
-
-describe('shownDifferenceS and numberWord', () => {
-  it('differ as the shown times do', () => {
-    expect(shownDifferenceS(1.00049, 1.00051)).toBe(-0.001)
-  })
-
-  it('write small numbers out', () => {
-    expect([0, 1, 12, 13].map(numberWord)).toEqual(['no', 'one', 'twelve', '13'])
   })
 })

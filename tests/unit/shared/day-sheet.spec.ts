@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { countWords, dayGroups, daySentence, outingSentence, trackSpread, type Sentence } from '../../../shared/day-sheet'
+import { dayGroups, daySentence, outingSentence, trackSpread, type Sentence } from '../../../shared/day-sheet'
 import { conditionsSchema, type Lap, type OutingSummary } from '../../../shared/schemas/days'
 
 let nextId = 0
@@ -96,11 +96,7 @@ describe('outingSentence', () => {
   })
 })
 
-describe('words', () => {
-  it('writes counts out up to twelve', () => {
-    expect([0, 1, 12, 13].map(count => countWords(count, 'lap'))).toEqual(['no laps', 'one lap', 'twelve laps', '13 laps'])
-  })
-
+describe('trackSpread', () => {
   it('speaks of the track temperature only where it moved by 3 degrees', () => {
     const at = (number: number, trackC: number | null) =>
       ({ number, conditions: { ...conditionsSchema.parse({}), trackC } })

@@ -2,7 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import {
   bestLap, bestSectors, countedLaps, lapFigures, lapStandings, leftOutReason, median, middleHalf, quantile,
-  shownSectors, sumOfBestSectors, type LapFigure,
+  shownDifferenceS, shownSectors, sumOfBestSectors, type LapFigure,
 } from '../../../shared/laps'
 
 function lap(timeS: number, more: Partial<LapFigure> = {}): LapFigure {
@@ -105,6 +105,13 @@ describe('sectors', () => {
     expect(sumOfBestSectors([{ sectorsS: [90] }])).toBeNull()
     expect(sumOfBestSectors([])).toBeNull()
     expect(sumOfBestSectors([{ sectorsS: [30, null] }])).toBeNull()
+  })
+})
+
+describe('shownDifferenceS', () => {
+  it('differs as the shown times do', () => {
+    expect(shownDifferenceS(1.00049, 1.00051)).toBe(-0.001)
+    expect(shownDifferenceS(1.0006, 1.0014)).toBe(0)
   })
 })
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { isUnderWay, problemWords, progressWords, rowWords, STATUS_WORDS, stepStates, waitingLogs } from '../../../shared/log-words'
+import { isUnderWay, problemWords, progressWords, rowWords, STATUS_WORDS, stepStates, withNews } from '../../../shared/log-words'
 import { LOG_STATUSES, LOG_STEPS } from '../../../shared/schemas/logs'
 
 describe('words about a log', () => {
@@ -8,22 +8,31 @@ describe('words about a log', () => {
   })
 
   it('says the step and how far the whole is', () => {
-    expect(progressWords({ status: 'processing', step: 'lap', fraction: 0.624 })).toBe('Cutting it into laps, 62 %')
+    expect(progressWords({ status: 'processing', step: 'cut', fraction: 0.624 })).toBe('Cutting it into laps, 62 %')
     expect(progressWords({ status: 'processing', step: null, fraction: 0 })).toBe('Being read, 0 %')
     expect(progressWords({ status: 'queued', step: null, fraction: 0 })).toBe('waiting to be read')
   })
 
   it('knows which steps are done, which is now and which wait', () => {
     const states = (status: 'queued' | 'processing' | 'ready', step: string | null) => stepStates({ status, step }).map(each => each.state).join(' ')
-    expect(states('processing', 'project')).toBe('done done now waiting waiting waiting')
-    expect(states('queued', null)).toBe('waiting waiting waiting waiting waiting waiting')
-    expect(states('ready', null)).toBe('done done done done done done')
+    expect(states('processing', 'cut')).toBe('done done now waiting')
+    expect(states('queued', null)).toBe('waiting waiting waiting waiting')
+    expect(states('ready', null)).toBe('done done done done')
     expect(stepStates({ status: 'queued', step: null }).map(each => each.step)).toEqual([...LOG_STEPS])
+  })
+
+  it('keeps the step when news do not name one, unless the log begins anew', () => {
+    const told = (status: 'queued' | 'processing' | 'ready', step: string | null, fraction: number) => ({ logId: 'a', status, step, fraction })
+    const cutting = told('processing', 'cut', 0.7)
+    expect(withNews(cutting, told('processing', null, 0))).toEqual(cutting)
+    expect(withNews(cutting, told('processing', 'read', 0.1))).toEqual(told('processing', 'read', 0.1))
+    expect(withNews(cutting, told('queued', null, 0))).toEqual(told('queued', null, 0))
+    expect(withNews(cutting, told('ready', null, 1))).toEqual(told('ready', null, 1))
+    expect(withNews(undefined, told('processing', null, 0))).toEqual(told('processing', null, 0))
   })
 
   it('tells logs that move by themselves from those that wait for a person', () => {
     expect(LOG_STATUSES.filter(isUnderWay)).toEqual(['uploading', 'queued', 'processing'])
-    expect(waitingLogs(LOG_STATUSES.map(status => ({ status }))).map(log => log.status)).toEqual(['mapping', 'no_lines'])
   })
 
   it('writes the rows of a problem', () => {

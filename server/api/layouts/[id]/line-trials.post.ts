@@ -3,7 +3,7 @@ import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 import { cutLaps } from '../../../utils/laps/lap'
 import type { DrivingDirection } from '../../../utils/laps/types'
-import { readPath } from '../../../utils/log-work'
+import { readPath } from '../../../utils/cut-work'
 import { notFound } from '../../../utils/problems'
 
 /** What lines would do to a log, worked out without storing anything. */

@@ -5,7 +5,7 @@ import { sendJob } from '../../../utils/jobs'
 import { readLog } from '../../../utils/logs'
 import { ProblemError } from '../../../utils/problems'
 
-/** What the columns are, as a person confirmed it; remembered for the next file with the same header. */
+/** What the columns are, as a person confirmed it; when it works, it is remembered for files with the same header. */
 export default defineApiHandler({
   who: { action: 'logs.write', of: 'log' },
   params: idParams,
@@ -13,7 +13,7 @@ export default defineApiHandler({
   status: 202,
   handler: async ({ db, teamId, params, body }) => {
     const log = await db('logs').where('id', params.id).forUpdate()
-      .first<{ status: string, header_key: string | null, preview: LogPreview | null }>('status', 'header_key', 'preview')
+      .first<{ status: string, preview: LogPreview | null }>('status', 'preview')
     if (!log.preview || ['uploading', 'queued', 'processing'].includes(log.status)) {
       throw new ProblemError(409, 'Being read', 'The log is being read at this moment. Wait until it is done, then change its columns.')
     }
@@ -24,10 +24,6 @@ export default defineApiHandler({
       throw new ProblemError(422, 'Not a column of this file', message, { errors: [{ path: `columns.${stranger}.source`, message }] })
     }
     await db('logs').where('id', params.id).update({ column_map: JSON.stringify(body), status: 'queued', problem: null, remembered: false })
-    if (log.header_key !== null) {
-      await db('column_maps').insert({ team_id: teamId, header_key: log.header_key, column_map: JSON.stringify(body) })
-        .onConflict(['team_id', 'header_key']).merge({ column_map: JSON.stringify(body), updated_at: db.fn.now() })
-    }
     await sendJob(db, 'log-read', { teamId, logId: params.id })
     return readLog(db, params.id)
   },

@@ -15,10 +15,19 @@ export default defineStreamHandler({
   params: idParams,
   stream: async ({ event, params, transaction }) => {
     const stream = createEventStream(event)
-    const push = (progress: LogProgress) => void stream.push(JSON.stringify(progress)).catch(() => undefined)
+    let told: LogProgress['status'] | undefined
+    const push = (progress: LogProgress) => {
+      told = progress.status
+      void stream.push(JSON.stringify(progress)).catch(() => undefined)
+    }
     // Followed before the state is read, so that nothing falls between the two.
     const unfollow = followLog(params.id, push)
-    const now = () => transaction(db => readProgress(db, params.id)).then(push, () => void stream.close())
+    // The database knows the status, but not the step: a status that was told already would only take the step back.
+    const tellChange = (progress: LogProgress) => {
+      if (progress.status === told) void stream.push({ event: 'beat', data: '' }).catch(() => undefined)
+      else push(progress)
+    }
+    const now = () => transaction(db => readProgress(db, params.id)).then(tellChange, () => void stream.close())
     const beat = setInterval(now, BEAT_MS)
     const forget = onShutdown(() => void stream.close())
     stream.onClosed(async () => {

@@ -1,6 +1,6 @@
 import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
-import { readPath } from '../../../utils/log-work'
+import { readPath } from '../../../utils/cut-work'
 import { ProblemError } from '../../../utils/problems'
 
 const MOST_POINTS = 6000

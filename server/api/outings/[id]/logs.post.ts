@@ -49,7 +49,7 @@ export default defineStreamHandler({
 
 async function refuseTwin(transaction: ShortTransaction, teamId: string, sha256: string): Promise<void> {
   const twin = await transaction(async db => db('logs').where({ team_id: teamId, sha256 })
-    .whereNotIn('status', ['uploading', 'refused', 'cancelled']).first<{ id: string, file_name: string } | undefined>('id', 'file_name'))
+    .whereNotIn('status', ['uploading', 'refused']).first<{ id: string, file_name: string } | undefined>('id', 'file_name'))
   if (twin) {
     throw new ProblemError(409, 'Already here', `The team has this very file already, as ${twin.file_name}. Nothing was stored twice.`, { see: `/logs/${twin.id}` })
   }

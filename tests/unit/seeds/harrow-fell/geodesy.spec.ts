@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import geodesic from 'geographiclib-geodesic'
 import { makeToDegrees } from '../../../../seeds/harrow-fell/geodesy'
 import { ORIGIN } from '../../../../seeds/harrow-fell/track'
-import { makePlane, toPlane } from '../../../../server/utils/laps/project'
+import { makePlane, toPlane } from '../../../../shared/plane'
 
 // GeographicLib, C. F. F. Karney: geodesics on WGS 84 to 15 nm.
 const wgs84 = geodesic.Geodesic.WGS84

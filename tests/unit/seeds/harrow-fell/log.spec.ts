@@ -4,7 +4,7 @@ import { LOG_HEADER, USUAL_LOG, writeLog } from '../../../../seeds/harrow-fell/l
 import { makeRandom } from '../../../../seeds/harrow-fell/random'
 import { makeTrack } from '../../../../seeds/harrow-fell/track'
 import { stateAt } from '../../../../seeds/harrow-fell/trajectory'
-import { makePlane, toPlane } from '../../../../server/utils/laps/project'
+import { makePlane, toPlane } from '../../../../shared/plane'
 import { readCsv } from './read-csv'
 
 // Seconds on a busy machine: whole laps are walked in small steps.

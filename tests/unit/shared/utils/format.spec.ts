@@ -1,8 +1,8 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import {
-  asSentence, carKind, countInWords, formatBar, formatCount, formatDate, formatDateTime, formatDifference, formatG,
-  formatKmh, formatLapTime, formatNumber, formatSetting, formatSize, formatTime, MISSING,
+  asSentence, carKind, countInWords, formatBar, formatCount, formatDate, formatDifference, formatG, formatKmh,
+  formatLapTime, formatNumber, formatSetting, formatSize, formatTime, MISSING, numberInWords,
 } from '../../../../shared/utils/format'
 
 const MISSING_VALUES = [null, undefined, Number.NaN, Infinity, -Infinity]
@@ -102,6 +102,7 @@ describe('quantities', () => {
     expect([0, 1, 2].map(n => formatCount(n, 'lap'))).toEqual(['0 laps', '1 lap', '2 laps'])
     expect(formatCount(2, 'entry', 'entries')).toBe('2 entries')
     expect([0, 1, 12, 13].map(n => countInWords(n, 'lap'))).toEqual(['no laps', 'one lap', 'twelve laps', '13 laps'])
+    expect([0, 12, 13].map(numberInWords)).toEqual(['no', 'twelve', '13'])
     expect(asSentence(countInWords(3, 'outing'))).toBe('Three outings')
     expect(asSentence('')).toBe('')
   })
@@ -124,10 +125,6 @@ describe('dates and times', () => {
     expect(formatTime('2026-09-12T23:20:00Z', 'Europe/London')).toBe('00:20')
     expect(formatTime('not a time', 'Europe/London')).toBe(MISSING)
   })
-
-  it('takes the date from the zone too', () => {
-    expect(formatDateTime('2026-09-12T23:20:00Z', 'Europe/London')).toBe('Sun 13 Sep 2026, 00:20')
-  })
 })
 
 describe('formatSetting', () => {
@@ -145,6 +142,10 @@ describe('formatSetting', () => {
     [Number.NaN, 'mm', MISSING],
   ])('writes %s %s as %s', (value, unit, text) => {
     expect(formatSetting(value, unit)).toBe(text)
+  })
+
+  it('writes the plus where the sign says which way', () => {
+    expect([0.5, 0, -0.8, 'none', null].map(value => formatSetting(value, 'mm', true))).toEqual(['+0.5', '0', '\u22120.8', 'none', 'not set'])
   })
 })
 

@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { cutLaps } from '../../../../../server/utils/laps/lap'
-import { makePlane } from '../../../../../server/utils/laps/project'
+import { makePlane } from '../../../../../shared/plane'
 import {
   asLog, drive, figureOfEight, HARROW_FELL, lineAcross, oval, pointAt, reversed, times, timingLine, track,
 } from '../../../../support/synthetic-track'

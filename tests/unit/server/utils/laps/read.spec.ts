@@ -70,6 +70,24 @@ describe('a good file', () => {
     expect(values(readBytes(latin1(text)), 'ol_vorn')).toEqual([90, 91])
   })
 
+  it('is read by the names of its columns, also where these hold what cannot be stored', () => {
+    const names = ['oil\u0000temp', `${'x'.repeat(199)}😀`, 'two\tparts']
+    const text = `time_s,lat,lon,${names.join(',')}\n0.0,54.40,-2.91,90,1,2\n0.1,54.41,-2.92,91,1,2\n`
+    const bytes = utf16(text, 'le')
+    const preview = sniffLog(bytes, { complete: true })
+    expect(preview.columns.map(({ source }) => source).slice(3)).toEqual(['oil?temp', `${'x'.repeat(199)}\uFFFD`, 'two parts'])
+    const log = readBytes(bytes, [], preview)
+    expect(log.channels).toHaveLength(3)
+    expect(JSON.stringify(log.channels.map(({ label }) => label))).not.toMatch(/\\u/)
+  })
+
+  it('goes on after a block of NUL bytes, which costs its own row alone', () => {
+    const log = readText(`${HEADER}${'0.0,54.40,-2.91,100,1,a\n'.repeat(3000)}${'\0'.repeat(512)}\n0.1,54.41,-2.92,50,-0.5,b\n`)
+    expect(log.timeS.at(-1)).toBe(0.1)
+    expect(log.rows).toBe(3002)
+    expect(JSON.stringify(log.problems)).not.toMatch(/\\u/)
+  })
+
   it('may be cut anywhere, also within a character', () => {
     const bytes = utf8('time_s,lat,lon,Öl (°C),note\n0.0,54.40,-2.91,90,"x ""𝜔""\r\ny"\n0.1,54.41,-2.92,91,ü\n')
     const whole = readBytes(bytes)

@@ -106,6 +106,48 @@ describe('records', () => {
     expect(seen.length).toBeGreaterThan(40_000 - 2 * 65_536 / 4)
   })
 
+  it('take a quote for a stray one that is not closed within 100 line ends', () => {
+    const cell = (feeds: number) => `1,"${'\n'.repeat(feeds)}"\n3,4\n`
+    expect(cellsOf(cell(100))).toHaveLength(2)
+    expect(cellsOf(cell(101))).toHaveLength(103)
+    // Those of all cells of a record together.
+    expect(cellsOf(`"${'\n'.repeat(60)}",${cell(40)}`)).toHaveLength(2)
+    expect(cellsOf(`"${'\n'.repeat(60)}",${cell(41)}`)).toHaveLength(103)
+    for (const feeds of [100, 101]) {
+      const bytes = utf8(cell(feeds))
+      const whole = inChunks(bytes, [])
+      for (let cut = 0; cut <= bytes.length; cut++) expect(inChunks(bytes, [cut])).toEqual(whole)
+    }
+  })
+
+  it('are the same wherever the chunks end, at the longest quoted cell and one byte beyond', () => {
+    for (const length of [65_530, 65_531, 65_532, 65_533, 65_534, 65_535, 65_536]) {
+      const bytes = utf8(`1,"${'x'.repeat(length)}\n" \n3,4\n`)
+      const whole = inChunks(bytes, [])
+      for (const cut of [3, 65_535, 65_536, 65_537, 65_538, 65_539, bytes.length - 6]) expect(inChunks(bytes, [cut])).toEqual(whole)
+      expect(whole).toHaveLength(length <= 65_532 ? 2 : 3)
+    }
+  })
+
+  it.each([
+    ['lines that begin with a quote', '"a\n'],
+    ['quotes that open again', '"a\n"b,'],
+    ['long lines that do', `"${'x'.repeat(700)}\n`],
+    ['cells of two lines that are closed', '"a\nb",'],
+    ['the same in lines of their own', 'x,"a\nb","c\nd\n'],
+    ['spaces after quotes', `"a" ${' '.repeat(50)}x\n`],
+    ['quotes alone', '"'],
+    ['pairs of quotes', '""\n"'],
+  ])('2 MB of %s take less than 2 s of processor time', (_, piece) => {
+    const bytes = utf8(piece.repeat(Math.floor(2e6 / piece.length)))
+    const before = process.cpuUsage()
+    const splitter = createRecordSplitter(',', () => {})
+    for (let at = 0; at < bytes.length; at += 65_536) splitter.push(bytes.subarray(at, at + 65_536))
+    splitter.end()
+    const { user, system } = process.cpuUsage(before)
+    expect((user + system) / 1e6).toBeLessThan(2)
+  })
+
   it('let spaces stand between a closing quote and the delimiter, and keep other quotes', () => {
     expect(cellsOf('"a" ,b\n5" pipe,2\n')).toEqual([['a', 'b'], ['5" pipe', '2']])
   })

@@ -54,6 +54,16 @@ describe('createRowSink', () => {
     expect(rows.problems()[0]!.message).toContain('"temp": "hot"')
   })
 
+  it('shows a bad cell so that it can be stored: NUL bytes as ?, an emoji that is cut not in half', () => {
+    const rows = sink()
+    rows.take(`0,1,a,${'\0'.repeat(60)}`)
+    rows.take(`${'x'.repeat(39)}😀,1,a,2`)
+    const [nul, emoji] = rows.problems().map(({ message }) => message)
+    expect(nul).toContain(`"temp": "${'?'.repeat(40)}" is not a number`)
+    expect(emoji).toContain('"time": "xxx')
+    expect(JSON.stringify([nul, emoji])).not.toMatch(/\\u/)
+  })
+
   it('keeps the cells of a short row and leaves a long row out', () => {
     const rows = sink()
     rows.take('0,1')

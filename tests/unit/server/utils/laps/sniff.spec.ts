@@ -98,6 +98,28 @@ describe('sniffLog', () => {
     expect(sniffText(`\uFEFF${HEADER}${ROWS}`).columns[0]!.source).toBe('time_s')
   })
 
+  it.each([
+    ['lines that begin with a quote', '"a\n'],
+    ['quoted cells of two lines', '"a\nb",'],
+    ['quotes within a quoted cell', '"a" "b,'],
+  ])('takes less than a second of processor time for 64 KiB of %s', (_, piece) => {
+    const head = utf8((HEADER + ROWS + piece.repeat(65_536)).slice(0, 65_536))
+    const before = process.cpuUsage()
+    expect(sniffLog(head).columns.length).toBeGreaterThan(0)
+    const { user, system } = process.cpuUsage(before)
+    expect((user + system) / 1e6).toBeLessThan(1)
+  })
+
+  it('holds no character that cannot be stored: no control characters, no half of an emoji', () => {
+    const emoji = `${'x'.repeat(199)}😀`
+    const text = `time,lat,lon,no\u0000te,${emoji},sp\u0001in [${'y'.repeat(19)}😀]\n0,54.4,-2.9,\u0000n\u0007,${emoji},5\n1,54.5,-2.9,b,c,6\n`
+    const { columns } = sniffLog(utf16(text, 'le'), { complete: true })
+    expect(columns[3]).toMatchObject({ source: 'no?te', firstValues: ['?n?', 'b'] })
+    expect(columns[5]!.unit).toContain('yyy')
+    // JSON writes such characters, and none other of these, as an escape.
+    expect(JSON.stringify(columns)).not.toMatch(/\\u/)
+  })
+
   it('does not change its input', () => {
     const head = utf8(HEADER + ROWS)
     const copy = head.slice()
