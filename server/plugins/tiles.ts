@@ -5,6 +5,9 @@ export default defineNitroPlugin((nitro) => {
   const { tileUrl } = useRuntimeConfig().public
   if (!tileUrl) return
   nitro.hooks.hook('nuxt-security:routeRules', (rules) => {
-    rules['/**'] = { headers: { contentSecurityPolicy: { 'img-src': ['\'self\'', 'data:', 'blob:', tileSource(tileUrl)] } } }
+    const headers = rules['/**']?.headers
+    const policy = headers ? headers.contentSecurityPolicy : undefined
+    if (!policy || typeof policy !== 'object') throw new Error('there is no content security policy to let the map tiles through')
+    policy['img-src'] = ['\'self\'', 'data:', 'blob:', tileSource(tileUrl)]
   })
 })

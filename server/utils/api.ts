@@ -27,8 +27,8 @@ interface Definition<P, Q, B, W extends Who, A> {
 }
 
 /**
- * What belongs to nobody (registration, sign-in) opens its own short transactions, since hashing a password between them
- * takes long; all else runs in one transaction as the person.
+ * What belongs to nobody (registration, sign-in) opens its own short transactions, since hashing a password between
+ * them takes long; all else runs in one transaction as the person.
  */
 type Database<W> = W extends 'anyone' ? { nobody: ShortTransaction } : { db: Transaction }
 

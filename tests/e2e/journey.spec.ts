@@ -59,8 +59,7 @@ async function addCar(page: Page): Promise<void> {
 
 async function addOuting(page: Page): Promise<void> {
   await follow(page, 'Days')
-  await heading(page, /./)
-  await page.goto('/days/new', { waitUntil: 'networkidle' })
+  await follow(page, 'Add a track day')
   await page.getByLabel('Date').fill('2026-09-12')
   await press(page, 'Add the day')
   await heading(page, /No outing/)
@@ -117,7 +116,8 @@ it('carries a stranger from registration to a comparison', async () => {
   await uploadLog(page)
   await drawLines(page)
 
-  await page.goto(outing, { waitUntil: 'networkidle' })
+  await follow(page, 'See the laps of outing 1')
+  await page.waitForURL(outing)
   await heading(page, /1:\d\d\.\d{3}/)
   const rows = page.locator('table.laps tbody tr')
   expect(await rows.count()).toBeGreaterThanOrEqual(10)
@@ -127,7 +127,8 @@ it('carries a stranger from registration to a comparison', async () => {
   await follow(page, /^Compare/)
   await heading(page, /slower|faster/)
   expect(new URL(page.url()).searchParams.get('lap')).toMatch(/^[0-9a-f-]{36}$/)
-  await page.locator('.chart svg, svg.trace, [data-chart] svg, canvas').first().waitFor()
+  await press(page, 'Unfold longitudinal and lateral g')
+  await page.getByText('most apart at').first().waitFor()
 
   const address = page.url()
   await page.goto('about:blank')

@@ -170,7 +170,7 @@ function faster(a: LapTrace, b: LapTrace, pathA: LapPath, pathB: LapPath): 'a' |
  *
  * @param a, b laps of one layout, with a margin of at least three samples at both ends
  * @param options.stepM distance between stations, metres
- * @throws {LapsError} 'bad_step' | 'no_position' | 'lap_not_covered' | 'length_mismatch'
+ * @throws {LapsError} 'bad_step' | 'no_position' | 'lap_not_covered' | 'lap_too_long' | 'length_mismatch'
  * @see `placeOnPath`, `deriveMotion`, `findBrakings`. O(n + length / step).
  */
 export function compareLaps(a: LapTrace, b: LapTrace, options: { stepM: number }): Comparison {

@@ -6,13 +6,14 @@ import { startSense } from './direction'
 import { LapsError } from './errors'
 import { gapAfterSample, threePointSlope } from './hermite'
 import type { Gap } from './hermite'
+import { indexBefore } from './interpolate'
 import { lineReport } from './line-report'
-import { countingCrossings, lapDistance, odometer, passings, usualSense } from './passes'
+import { countingCrossings, lapDistance, odometer, passings, refuseTooMany, usualSense } from './passes'
 import type { LineUse, Pass } from './passes'
 import type { CutLap, CutResult, DrivingDirection, TimingLine } from './types'
 
-/** What laps are cut from: the log's own samples. */
-export interface CutLog {
+/** What laps are cut from: the log's own samples of time and place. */
+export interface LogPath {
   /** Strictly rising, length n, seconds. */
   timeS: Float64Array
   /** Length n, degrees, NaN = missing. */
@@ -24,7 +25,8 @@ export interface CutLog {
 /** A car may have driven this much further in a gap than its edges say. */
 const GAP_REACH = 1.5
 
-interface LogPath {
+/** The same in the plane, with velocity and the distance driven. */
+interface PlanePath {
   timeS: Float64Array
   xM: Float64Array
   yM: Float64Array
@@ -51,7 +53,7 @@ function planeAt(line: TimingLine): Plane {
 /**
  * The log in the plane, without the samples that have no position of their own: missing ones, and those inside a gap.
  */
-function pathOf(log: CutLog, plane: Plane): LogPath {
+function pathOf(log: LogPath, plane: Plane): PlanePath {
   const { xM, yM } = toPlane(plane, log.latitudeDeg, log.longitudeDeg)
   const gaps = [...log.gaps].sort((p, q) => p.fromS - q.fromS)
   let kept = 0
@@ -86,19 +88,22 @@ function inPlane(line: TimingLine, plane: Plane): PlaneLine {
 }
 
 /** All crossings of a line, with the distance driven until each. */
-function crossingsOf(path: LogPath, line: PlaneLine): Pass[] {
-  return findCrossings(path.timeS, path.xM, path.yM, path.vxMps, path.vyMps, line, path.gapAfter).map((crossing) => {
+function crossingsOf(path: PlanePath, line: PlaneLine): Pass[] {
+  const crossings = findCrossings(path.timeS, path.xM, path.yM, path.vxMps, path.vyMps, line, path.gapAfter)
+  const passes = crossings.map((crossing) => {
     const i = crossing.sample
     const u = (crossing.timeS - path.timeS[i]!) / (path.timeS[i + 1]! - path.timeS[i]!)
     return { ...crossing, distanceM: path.distanceM[i]! + u * (path.distanceM[i + 1]! - path.distanceM[i]!) }
   })
+  refuseTooMany(passes)
+  return passes
 }
 
 /**
  * Gaps about which speed and heading at both edges say nothing, and which are long enough that the car may have been at
  * the line in between.
  */
-function doubtfulGaps({ timeS, xM, yM, vxMps, vyMps, gapAfter }: LogPath, line: PlaneLine): Gap[] {
+function doubtfulGaps({ timeS, xM, yM, vxMps, vyMps, gapAfter }: PlanePath, line: PlaneLine): Gap[] {
   const lineX = (line.ax + line.bx) / 2
   const lineY = (line.ay + line.by) / 2
   const lengthM = Math.hypot(line.bx - line.ax, line.by - line.ay)
@@ -119,7 +124,7 @@ function doubtfulGaps({ timeS, xM, yM, vxMps, vyMps, gapAfter }: LogPath, line: 
 }
 
 /** A sector line, in the sense in which it is usually passed; nothing counts in a log that was driven the wrong way. */
-function sectorUse(path: LogPath, line: TimingLine, plane: Plane, counts: boolean, lapM: number): LineUse {
+function sectorUse(path: PlanePath, line: TimingLine, plane: Plane, counts: boolean, lapM: number): LineUse {
   const drawn = inPlane(line, plane)
   const all = crossingsOf(path, drawn)
   const usual = usualSense(passings(all))
@@ -128,6 +133,9 @@ function sectorUse(path: LogPath, line: TimingLine, plane: Plane, counts: boolea
   return { line, all, counting, doubtful: doubtfulGaps(path, drawn) }
 }
 
+/** A line with the instants of the crossings that count, to look them up. */
+interface TimedUse { counting: readonly Pass[], countingS: readonly number[] }
+
 /**
  * Sector times of one lap: each line counts at its first crossing after the one before it, null on both sides of a
  * miss.
@@ -135,13 +143,14 @@ function sectorUse(path: LogPath, line: TimingLine, plane: Plane, counts: boolea
 function sectorTimes(
   start: Pass,
   end: Pass,
-  sectors: readonly LineUse[],
+  sectors: readonly TimedUse[],
 ): { sectorsS: CutLap['sectorsS'], used: Pass[] } {
   const instants: (number | null)[] = [start.timeS]
   const used = [start, end]
   let after = start.timeS
-  for (const { counting } of sectors) {
-    const crossing = counting.find(pass => pass.timeS > after && pass.timeS < end.timeS)
+  for (const { counting, countingS } of sectors) {
+    const next = counting[indexBefore(countingS, after) + 1]
+    const crossing = next && next.timeS < end.timeS ? next : undefined
     instants.push(crossing ? crossing.timeS : null)
     if (!crossing) continue
     used.push(crossing)
@@ -158,11 +167,15 @@ function sectorTimes(
 /** Laps between the crossings of the start/finish line, and the rest of the log before and after them. */
 function lapsBetween(firstS: number, lastS: number, start: LineUse, sectors: readonly LineUse[]): CutLap[] {
   const starts = start.counting
-  const doubtful = [start, ...sectors].flatMap(use => use.doubtful)
+  const timedSectors = sectors.map(({ counting }) => ({ counting, countingS: counting.map(pass => pass.timeS) }))
+  // All are stretches between two neighbouring samples: in this order their ends rise too.
+  const doubtful = [start, ...sectors].flatMap(use => use.doubtful).sort((p, q) => p.fromS - q.fromS)
+  const doubtfulToS = doubtful.map(gap => gap.toS)
   const laps: CutLap[] = []
   let timed = 0
   const add = (kind: CutLap['kind'], startS: number, endS: number, sectorsS: CutLap['sectorsS'], used: Pass[]) => {
-    const unsure = used.some(pass => pass.gap !== 'none') || doubtful.some(gap => gap.toS > startS && gap.fromS < endS)
+    const gap = doubtful[indexBefore(doubtfulToS, startS) + 1]
+    const unsure = used.some(pass => pass.gap !== 'none') || (gap !== undefined && gap.fromS < endS)
     const flags = [...(unsure ? ['gap_at_line'] : []), ...(sectorsS.includes(null) ? ['missed_sector'] : [])]
     const number = { out: 0, timed: timed + 1, in: timed + 1 }[kind]
     if (kind === 'timed') timed++
@@ -178,7 +191,7 @@ function lapsBetween(firstS: number, lastS: number, start: LineUse, sectors: rea
   for (let k = 1; k < starts.length; k++) {
     const from = starts[k - 1]!
     const to = starts[k]!
-    const { sectorsS, used } = sectorTimes(from, to, sectors)
+    const { sectorsS, used } = sectorTimes(from, to, timedSectors)
     add('timed', from.timeS, to.timeS, sectorsS, used)
   }
   if (lastS > last.timeS) add('in', last.timeS, lastS, [], [last])
@@ -200,15 +213,16 @@ function lapsBetween(firstS: number, lastS: number, start: LineUse, sectors: rea
  * which the car may have crossed a line (such a crossing is not used), 'missed_sector' when a sector line was not
  * crossed in order.
  *
- * @param log     see CutLog; positions float64 as stored, so that cutting again is equal bit for bit
+ * @param log     see LogPath; positions float64 as stored, so that cutting again is equal bit for bit
  * @param lines   one start/finish line and any number of sector lines, in any order
  * @param options the driving direction of the layout, null = as this log was usually driven
  * @returns laps in order of time, line counts in the order of `lines`, warnings as sentences
- * @throws {LapsError} 'no_start_line' | 'line_without_length' | 'length_mismatch' | 'no_position'
+ * @throws {LapsError} 'no_start_line' | 'line_without_length' | 'length_mismatch' | 'no_position' |
+ *   'line_crossed_too_often'
  * @see `findCrossings` for how exact an instant is. O(n x lines).
  */
 export function cutLaps(
-  log: CutLog,
+  log: LogPath,
   lines: readonly TimingLine[],
   options: { direction: DrivingDirection | null },
 ): CutResult {

@@ -1,5 +1,6 @@
 import { median } from 'simple-statistics'
 import type { LogProblem } from '../../../shared/schemas/logs'
+import { indexBefore } from './interpolate'
 import { passings } from './passes'
 import type { LineUse } from './passes'
 import type { CutLap, LineCount, TimingLine } from './types'
@@ -20,8 +21,8 @@ function offSquare(use: LineUse): number | null {
 
 /** Is a sector line crossed in most laps, but not where its number says? */
 function outOfOrder(use: LineUse, sector: number, timed: readonly CutLap[]): boolean {
-  const crossed = timed.filter(lap =>
-    use.counting.some(pass => pass.timeS > lap.startS && pass.timeS < lap.startS + lap.timeS))
+  const countingS = use.counting.map(pass => pass.timeS)
+  const crossed = timed.filter(lap => countingS[indexBefore(countingS, lap.startS) + 1]! < lap.startS + lap.timeS)
   const missed = crossed.filter(lap => lap.sectorsS[sector] === null && lap.sectorsS[sector + 1] === null)
   return crossed.length > 0 && 2 * missed.length > crossed.length
 }

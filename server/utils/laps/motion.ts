@@ -8,16 +8,12 @@ const CRAWL_MPS = 1
 export interface Motion {
   /** As logged, else the length of the fitted velocity. */
   speedMps: Float64Array
-  /** Counter-clockwise from east, within -pi and pi; NaN below 1 m/s. */
-  headingRad: Float64Array
   /** Positive in a left-hand bend; NaN below 1 m/s. */
   curvature1pm: Float64Array
   /** Positive when speeding up. */
   longitudinalMps2: Float64Array
   /** Positive in a left-hand bend; zero below 1 m/s. */
   lateralMps2: Float64Array
-  /** Driven since the first sample. */
-  distanceM: Float64Array
 }
 
 /** Value, slope and second derivative of the fitted parabola at offset zero, as sums over weights. */
@@ -112,25 +108,8 @@ function derivatives(timeS: ArrayLike<number>, columns: ArrayLike<number>[]): De
   return results
 }
 
-/** Path length by the trapezoid rule over speed; where a speed is missing, the straight line between the positions. */
-function driven(
-  timeS: ArrayLike<number>,
-  xM: ArrayLike<number>,
-  yM: ArrayLike<number>,
-  speedMps: Float64Array,
-): Float64Array {
-  const distanceM = new Float64Array(timeS.length)
-  for (let i = 1; i < timeS.length; i++) {
-    const step = (speedMps[i]! + speedMps[i - 1]!) / 2 * (timeS[i]! - timeS[i - 1]!)
-    const chord = Math.hypot(xM[i]! - xM[i - 1]!, yM[i]! - yM[i - 1]!)
-    const stepM = Number.isNaN(step) ? chord : step
-    distanceM[i] = distanceM[i - 1]! + (Number.isNaN(stepM) ? 0 : stepM)
-  }
-  return distanceM
-}
-
 /**
- * Speed, heading, curvature and accelerations of a path.
+ * Speed, curvature and accelerations of a path.
  *
  * At every sample a parabola is fitted to the samples within 0.25 s either way (to the three nearest where there are
  * fewer), and its derivatives are taken: exact for constant acceleration on a straight; on a circle driven at w rad/s
@@ -162,7 +141,6 @@ export function deriveMotion(
   }
   const [x, y] = derivatives(timeS, [xM, yM]) as [Derivatives, Derivatives]
   const speed = speedMps ? Float64Array.from(speedMps) : new Float64Array(n)
-  const headingRad = new Float64Array(n)
   const curvature1pm = new Float64Array(n)
   const lateralMps2 = new Float64Array(n)
   for (let i = 0; i < n; i++) {
@@ -171,11 +149,9 @@ export function deriveMotion(
     const fitted = Math.hypot(vx, vy)
     if (!speedMps) speed[i] = fitted
     const crawling = fitted < CRAWL_MPS
-    headingRad[i] = crawling ? Number.NaN : Math.atan2(vy, vx)
     curvature1pm[i] = crawling ? Number.NaN : (vx * y.second[i]! - vy * x.second[i]!) / fitted ** 3
     lateralMps2[i] = crawling ? 0 : speed[i]! ** 2 * curvature1pm[i]!
   }
   const longitudinalMps2 = derivatives(timeS, [speed])[0]!.slope
-  const distanceM = driven(timeS, xM, yM, speed)
-  return { speedMps: speed, headingRad, curvature1pm, longitudinalMps2, lateralMps2, distanceM }
+  return { speedMps: speed, curvature1pm, longitudinalMps2, lateralMps2 }
 }

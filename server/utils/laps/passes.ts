@@ -1,6 +1,7 @@
 import type { Crossing } from './cross'
 import type { Gap } from './hermite'
 import type { TimingLine } from './types'
+import { LapsError } from './errors'
 
 /** A crossing with the distance driven until then. */
 export interface Pass extends Crossing { distanceM: number }
@@ -25,6 +26,8 @@ const LINGER_ASIDE_M = 6
 const SHORTEST_THIRD_M = 50
 /** Two straights of one lap are less than a lap apart; the rest allows for laps that differ in length. */
 const WITHIN_LAP = 0.95
+/** Crossings of one line in one log, waiting on it apart: a day of the shortest laps is a quarter of it. */
+const MOST_CROSSINGS = 2000
 /** Steps shorter than this are a standing car's noise. */
 const ODOMETER_STEP_M = 2
 
@@ -50,6 +53,30 @@ export function odometer(xM: ArrayLike<number>, yM: ArrayLike<number>): Float64A
 }
 
 /**
+ * Refuses a line that is crossed without end, by the track of a receiver gone astray or where a line covers half the
+ * circuit. A car that waits on the line, whose noise crosses it thousands of times, counts once.
+ * @param crossings in order of time
+ * @throws {LapsError} 'line_crossed_too_often' above 2000 crossings. O(n).
+ */
+export function refuseTooMany(crossings: readonly Pass[]): void {
+  let counted: Pass | undefined
+  let count = 0
+  for (const crossing of crossings) {
+    if (counted && lingers(counted, crossing)) continue
+    counted = crossing
+    count++
+  }
+  if (count <= MOST_CROSSINGS) return
+  throw new LapsError('line_crossed_too_often', `This log crosses one of the timing lines more than ${MOST_CROSSINGS} times. Draw the line shorter, just across the track, and check the positions of the log.`)
+}
+
+/** Is the car still where it crossed the line before? */
+function lingers(before: Pass, crossing: Pass): boolean {
+  return crossing.distanceM - before.distanceM < LINGER_M
+    && Math.abs(crossing.offsetM - before.offsetM) < LINGER_ASIDE_M
+}
+
+/**
  * Crossings in runs that belong to one passing of the line, each run with the sense of its sum: a car that waits on the
  * line or rolls back over it has passed once, one that turns round has not passed at all.
  * @param crossings in order of time
@@ -59,10 +86,7 @@ export function passings(crossings: readonly Pass[]): Pass[] {
   const runs: Pass[][] = []
   let previous: Pass | undefined
   for (const crossing of crossings) {
-    const lingers = previous !== undefined
-      && crossing.distanceM - previous.distanceM < LINGER_M
-      && Math.abs(crossing.offsetM - previous.offsetM) < LINGER_ASIDE_M
-    if (lingers) runs.at(-1)!.push(crossing)
+    if (previous && lingers(previous, crossing)) runs.at(-1)!.push(crossing)
     else runs.push([crossing])
     previous = crossing
   }
@@ -120,7 +144,7 @@ export function lapDistance(crossings: readonly Pass[]): number {
  * been driven; and of several straights that the line cuts the one where the car passes nearest to the line's middle.
  * @param crossings in order of time
  * @param lapM length of a lap, NaN = not known
- * @returns in order of time. O(n m), m the crossings within a third of a lap that stand.
+ * @returns in order of time. O(n m), m the crossings within a lap that stand.
  */
 export function countingCrossings(crossings: readonly Pass[], sense: 1 | -1, lapM: number): Pass[] {
   const thirdM = Math.max(SHORTEST_THIRD_M, (lapM || 0) / 3)
@@ -133,9 +157,15 @@ export function countingCrossings(crossings: readonly Pass[], sense: 1 | -1, lap
     }
     if (!again) standing.push(crossing)
   }
-  const withinM = Number.isNaN(lapM) ? Infinity : WITHIN_LAP * lapM
-  return standing.filter(crossing => !standing.some(other =>
-    Math.abs(other.offsetM) < Math.abs(crossing.offsetM)
-    && Math.abs(other.offsetM - crossing.offsetM) > SAME_STRAIGHT_M
-    && Math.abs(other.distanceM - crossing.distanceM) < withinM))
+  const withinM = lapM > 0 ? WITHIN_LAP * lapM : Infinity
+  let from = 0
+  return standing.filter((crossing) => {
+    while (crossing.distanceM - standing[from]!.distanceM >= withinM) from++
+    for (let k = from; k < standing.length && standing[k]!.distanceM - crossing.distanceM < withinM; k++) {
+      const { offsetM } = standing[k]!
+      const nearer = Math.abs(offsetM) < Math.abs(crossing.offsetM)
+      if (nearer && Math.abs(offsetM - crossing.offsetM) > SAME_STRAIGHT_M) return false
+    }
+    return true
+  })
 }

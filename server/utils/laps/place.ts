@@ -4,6 +4,8 @@ import { indexBefore } from './interpolate'
 
 /** No piece of a path is longer: on a bend of 10 m radius a chord of 2 m is 0.2 % short. */
 const PIECE_M = 2
+/** No lap is longer; positions that make one so would make points without number. Common practice, no source. */
+const LONGEST_LAP_M = 200_000
 /** How far around the predecessor's place a foot is looked for. */
 const SEARCH_BACK_M = 5
 const SEARCH_AHEAD_M = 10
@@ -34,7 +36,8 @@ export interface LapPath {
  * @param yM length n, metres, no missing values
  * @param startS the lap's start on the log's clock
  * @param lapTimeS its duration
- * @throws {LapsError} 'lap_not_covered' where the samples do not reach from its start to its end
+ * @throws {LapsError} 'lap_not_covered' where the samples do not reach from its start to its end, 'lap_too_long' where
+ *   it is longer than 200 km
  * @see `findCrossings`. O(n + m), m points returned.
  */
 export function lapPath(
@@ -49,13 +52,21 @@ export function lapPath(
   if (!(n > 1 && lapTimeS > 0 && timeS[0]! <= startS && timeS[n - 1]! >= endS)) {
     throw new LapsError('lap_not_covered', 'the samples do not cover the whole lap')
   }
+  const first = Math.max(0, indexBefore(timeS, startS))
+  const fromS = (i: number) => Math.max(timeS[i]!, startS)
+  const toS = (i: number) => Math.min(timeS[i + 1]!, endS)
+  const chordM = (i: number) =>
+    Math.hypot(xM[i + 1]! - xM[i]!, yM[i + 1]! - yM[i]!) * (toS(i) - fromS(i)) / (timeS[i + 1]! - timeS[i]!)
+  let chordsM = 0
+  for (let i = first; i + 1 < n && timeS[i]! < endS; i++) chordsM += chordM(i)
+  refuseTooLong(chordsM)
   const noGaps = new Uint8Array(n)
   const vx = threePointSlope(timeS, xM, noGaps)
   const vy = threePointSlope(timeS, yM, noGaps)
   const t: number[] = []
   const x: number[] = []
   const y: number[] = []
-  for (let i = Math.max(0, indexBefore(timeS, startS)); i + 1 < n && timeS[i]! < endS; i++) {
+  for (let i = first; i + 1 < n && timeS[i]! < endS; i++) {
     const h = timeS[i + 1]! - timeS[i]!
     const cx = hermite(xM[i]!, vx[i]! * h, xM[i + 1]!, vx[i + 1]! * h)
     const cy = hermite(yM[i]!, vy[i]! * h, yM[i + 1]!, vy[i + 1]! * h)
@@ -66,16 +77,27 @@ export function lapPath(
       x.push(cubicAt(cx, (atS - timeS[i]!) / h))
       y.push(cubicAt(cy, (atS - timeS[i]!) / h))
     }
-    const fromS = Math.max(timeS[i]!, startS)
-    const toS = Math.min(timeS[i + 1]!, endS)
-    const pieces = Math.ceil(Math.hypot(xM[i + 1]! - xM[i]!, yM[i + 1]! - yM[i]!) * (toS - fromS) / h / PIECE_M)
-    add(fromS)
-    for (let k = 1; k < pieces; k++) add(fromS + (toS - fromS) * k / pieces)
-    if (toS === endS) add(endS)
+    const pieces = Math.ceil(chordM(i) / PIECE_M)
+    add(fromS(i))
+    for (let k = 1; k < pieces; k++) add(fromS(i) + (toS(i) - fromS(i)) * k / pieces)
+    if (toS(i) === endS) add(endS)
   }
-  const stationM = new Float64Array(t.length)
-  for (let i = 1; i < t.length; i++) stationM[i] = stationM[i - 1]! + Math.hypot(x[i]! - x[i - 1]!, y[i]! - y[i - 1]!)
-  return { timeS: Float64Array.from(t), xM: Float64Array.from(x), yM: Float64Array.from(y), stationM }
+  return { timeS: Float64Array.from(t), xM: Float64Array.from(x), yM: Float64Array.from(y), stationM: stations(x, y) }
+}
+
+/** Distance along the points from the first of them. */
+function stations(x: readonly number[], y: readonly number[]): Float64Array {
+  const stationM = new Float64Array(x.length)
+  for (let i = 1; i < x.length; i++) stationM[i] = stationM[i - 1]! + Math.hypot(x[i]! - x[i - 1]!, y[i]! - y[i - 1]!)
+  // The curve can swing far beyond its chords where samples follow each other very unevenly.
+  refuseTooLong(stationM.at(-1)!)
+  return stationM
+}
+
+function refuseTooLong(lengthM: number): void {
+  if (lengthM <= LONGEST_LAP_M) return
+  const limit = `A lap is longer than ${LONGEST_LAP_M / 1000} km`
+  throw new LapsError('lap_too_long', `${limit}, which no circuit is. Check the positions of the log and where the timing lines lie.`)
 }
 
 interface Foot { stationM: number, awayM: number }

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { countingCrossings, lapDistance, odometer, passings, usualSense } from '../../../../../server/utils/laps/passes'
+import { countingCrossings, lapDistance, odometer, passings, refuseTooMany, usualSense } from '../../../../../server/utils/laps/passes'
 import type { Pass } from '../../../../../server/utils/laps/passes'
 
 /** Crossings by distance driven; ten metres a second. */
@@ -17,6 +17,22 @@ describe('odometer', () => {
     expect(distanceM[499]).toBeGreaterThanOrEqual(247.5)
     expect(distanceM[499]).toBeLessThanOrEqual(249.5)
     expect(distanceM[1000]! - distanceM[499]!).toBeLessThanOrEqual(2.5)
+  })
+})
+
+describe('refuseTooMany', () => {
+  const laps = (count: number) => Array.from({ length: count }, (_, k) => pass(k * 900))
+
+  it('refuses more than 2000 crossings of a line', () => {
+    expect(() => refuseTooMany(laps(2000))).not.toThrow()
+    expect(() => refuseTooMany(laps(2001))).toThrow(expect.objectContaining({ code: 'line_crossed_too_often' }))
+  })
+
+  it('lets a car wait on the line, but not crawl along it', () => {
+    const noise = Array.from({ length: 9000 }, (_, k) => pass(5000 + k * 0.001, k % 2 ? 1 : -1, 2 * Math.sin(k)))
+    expect(() => refuseTooMany([...laps(5), ...noise])).not.toThrow()
+    const along = Array.from({ length: 9000 }, (_, k) => pass(k * 5, k % 2 ? 1 : -1, k * 5))
+    expect(() => refuseTooMany(along)).toThrow(expect.objectContaining({ code: 'line_crossed_too_often' }))
   })
 })
 
@@ -79,6 +95,14 @@ describe('countingCrossings', () => {
   it('of two straights in one sense the one nearest to the middle', () => {
     const both = [0, 1000, 2000].flatMap(d => [pass(d, 1, 30), pass(d + 400, 1, -3)])
     expect(at(countingCrossings(both, 1, 1000))).toEqual([400, 1400, 2400])
+  })
+
+  it('looks a whole lap back and ahead for the nearest one', () => {
+    // A near crossing 0.9 laps before or after a far one silences it; one a full lap away does not.
+    expect(at(countingCrossings([pass(0, 1, 2), pass(900, 1, 30)], 1, 1000))).toEqual([0])
+    expect(at(countingCrossings([pass(0, 1, 30), pass(900, 1, 2)], 1, 1000))).toEqual([900])
+    expect(at(countingCrossings([pass(0, 1, 30), pass(1000, 1, 2), pass(2000, 1, 30)], 1, 1000))).toEqual([0, 1000, 2000])
+    expect(at(countingCrossings([pass(0, 1, 30), pass(90_000, 1, 2)], 1, Number.NaN))).toEqual([90_000])
   })
 
   it('keeps a lap that ends on the far side of one straight', () => {

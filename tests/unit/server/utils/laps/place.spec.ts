@@ -51,6 +51,31 @@ describe('lapPath', () => {
   })
 })
 
+describe('a lap that is too long', () => {
+  const tooLong = expect.objectContaining({ code: 'lap_too_long' })
+  const timeS = times(0, 40, 1)
+  const still = timeS.map(() => 0)
+
+  it('is refused above 200 km before points are laid along it', () => {
+    expect(() => lapPath(timeS, timeS.map(t => 190_000 * (t % 2)), still, 1, 38)).toThrow(tooLong)
+    expect(() => lapPath(timeS, timeS.map(t => 1e12 * t), still, 1, 38)).toThrow(tooLong)
+    // 5 km a second, for 39 s and for 41 s in all.
+    const far = timeS.map(t => 5000 * t)
+    expect(lapPath(timeS, far, still, 0.5, 39).stationM.at(-1)).toBeCloseTo(195_000, 3)
+    expect(() => lapPath([...timeS, 41], [...far, 205_000], [...still, 0], 0, 41)).toThrow(tooLong)
+  })
+
+  it('counts no more of a stretch than lies within it', () => {
+    const path = lapPath([0, 1, 2, 3], [-1e6, 0, 1000, 2000], [0, 0, 0, 0], 1, 1.5)
+    expect(path.timeS.at(-1)).toBe(2.5)
+  })
+
+  it('is refused where the curve swings out between samples, with chords that are short', () => {
+    // 1 km in a thousandth of a second, then 1000 s of standing: a slope of 1e6 m/s at the sample between them.
+    expect(() => lapPath([0, 1, 1.001, 1001, 1002], [0, 0, 1000, 1000, 1000], [0, 0, 0, 0, 0], 0.5, 1001)).toThrow(tooLong)
+  })
+})
+
 describe('placeOnPath', () => {
   it('a lap on its own path is where it is', () => {
     const path = lapOf(OVAL, 30, 10)

@@ -101,11 +101,12 @@ describe('sniffLog', () => {
   it.each([
     ['lines that begin with a quote', '"a\n'],
     ['quoted cells of two lines', '"a\nb",'],
-    ['quotes within a quoted cell', '"a" "b,'],
+    ['quotes within a quoted cell', '"a" "b,\n'],
   ])('takes less than a second of processor time for 64 KiB of %s', (_, piece) => {
     const head = utf8((HEADER + ROWS + piece.repeat(65_536)).slice(0, 65_536))
     const before = process.cpuUsage()
-    expect(sniffLog(head).columns.length).toBeGreaterThan(0)
+    // No table of numbers, but that is not what is asked here.
+    expect(refusal(() => sniffLog(head)).code).toBe('no_table')
     const { user, system } = process.cpuUsage(before)
     expect((user + system) / 1e6).toBeLessThan(1)
   })
