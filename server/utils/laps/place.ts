@@ -15,6 +15,8 @@ const LOST_M = 25
  * How far ahead it is looked for then, for each metre that it has driven since (a short cut saves no more than this).
  */
 const LOST_AHEAD = 3
+/** While it is lost it is looked for again each time it has driven this much further, not at every point. */
+const LOST_AGAIN = 1.02
 
 /** A lap's way from line to line, in points no more than 2 m apart. */
 export interface LapPath {
@@ -132,7 +134,8 @@ function footWithin(reference: LapPath, x: number, y: number, fromM: number, toM
  *
  * @param reference path of the lap along which station is measured
  * @param lap       path of the lap to be placed
- * @returns length of `lap`, metres; exactly 0 at its first point and the reference's length at its last. O(n).
+ * @returns length of `lap`, metres; exactly 0 at its first point and the reference's length at its last. O(n), for a
+ *   lost lap O(n log n).
  */
 export function placeOnPath(reference: LapPath, lap: LapPath): Float64Array {
   const n = lap.stationM.length
@@ -140,11 +143,14 @@ export function placeOnPath(reference: LapPath, lap: LapPath): Float64Array {
   const stationM = new Float64Array(n)
   let foundM = 0
   let drivenAtFoundM = 0
+  let againM = 0
   for (let i = 1; i < n; i++) {
     const drivenM = lap.stationM[i]! - drivenAtFoundM
+    stationM[i] = stationM[i - 1]!
+    if (drivenM < againM) continue
     const aheadM = drivenM > LOST_M ? LOST_AHEAD * drivenM : drivenM
     const foot = footWithin(reference, lap.xM[i]!, lap.yM[i]!, foundM - SEARCH_BACK_M, foundM + aheadM + SEARCH_AHEAD_M)
-    stationM[i] = stationM[i - 1]!
+    againM = foot.awayM > LOST_M ? drivenM * LOST_AGAIN : 0
     if (foot.awayM > LOST_M) continue
     foundM = foot.stationM
     drivenAtFoundM = lap.stationM[i]!

@@ -330,6 +330,16 @@ describe('what is refused, and what is only said', () => {
     expect(() => cutLaps({ ...log, latitudeDeg: log.latitudeDeg.map(() => Number.NaN) }, [line], none)).toThrow(expect.objectContaining({ code: 'no_position' }))
   })
 
+  it('refuses a line that is crossed thousands of times', () => {
+    const crossing = (count: number) => {
+      const timeS = times(0, count, 1)
+      return asLog(timeS, timeS.map(t => ({ x: t % 2 ? 200 : -200, y: 0 })))
+    }
+    const line = timingLine(0, { a: { x: 0, y: -10 }, b: { x: 0, y: 10 } })
+    expect(() => cutLaps(crossing(2001), [line], none)).toThrow(expect.objectContaining({ code: 'line_crossed_too_often' }))
+    expect(cutLaps(crossing(2000), [line], none).lines[0]!.crossed).toBe(1000)
+  })
+
   it('a line that is never crossed makes one out lap', () => {
     const { laps, warnings } = cutLaps(log, [timingLine(0, { a: { x: 0, y: 40 }, b: { x: 0, y: 60 } })], none)
     expect(laps).toHaveLength(1)

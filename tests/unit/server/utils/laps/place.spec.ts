@@ -143,6 +143,20 @@ describe('placeOnPath', () => {
     })
   })
 
+  it('does not take long over a lap that never comes near the reference', () => {
+    const timeS = times(0, 400, 1)
+    const far = timeS.map(t => 450 * t)
+    const along = (asideM: number) => lapPath(timeS, far, timeS.map(() => asideM), 0, 400)
+    const [reference, aside] = [along(0), along(500)]
+    const before = process.cpuUsage()
+    const stationM = placeOnPath(reference, aside)
+    const { user, system } = process.cpuUsage(before)
+    expect(stationM.at(-2)).toBe(0)
+    expect(stationM.at(-1)).toBe(reference.stationM.at(-1))
+    // 180 km: a search at every point takes half a minute, this a quarter of a second.
+    expect((user + system) / 1e6).toBeLessThan(3)
+  })
+
   it('finds back after a short cut of 120 m that leaves out 388 m', () => {
     const reference = lapOf(OVAL, 30, 10)
     // From the southern straight right across to the northern one: 120 m instead of 2 x 100 m and the bend of 188 m.
