@@ -1,7 +1,8 @@
 import { readChannels } from './channels'
-import { cutPart, readParts, type LogPath } from './cutting'
+import { cutPart, readParts } from './cutting'
 import { asTeam, type Transaction } from './db/transactions'
 import type { Jobs } from './jobs'
+import type { LogPath } from './laps/lap'
 import { tellProgress } from './progress'
 
 /**

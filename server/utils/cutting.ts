@@ -1,7 +1,8 @@
 import { randomUUID } from 'node:crypto'
 import { LapsError } from './laps/errors'
 import type { DrivingDirection, CutLap, CutResult, TimingLine } from './laps/types'
-import { cutLaps } from './laps/lap'
+import { indexBefore } from './laps/interpolate'
+import { cutLaps, type LogPath } from './laps/lap'
 import { lapPath } from './laps/place'
 import { makePlane, toPlane } from '../../shared/plane'
 import { matchLaps } from './laps/recut'
@@ -13,13 +14,6 @@ import type { Transaction } from './db/transactions'
 const CUT_COLUMNS = ['outing_id', 'number', 'kind', 'start_s', 'time_s', 'first_sample', 'last_sample', 'flags']
 
 const NOTHING: CutResult = { laps: [], lines: [], warnings: [] }
-
-export interface LogPath {
-  timeS: Float64Array
-  latitudeDeg: Float64Array
-  longitudeDeg: Float64Array
-  gaps: { fromS: number, toS: number }[]
-}
 
 export interface LogPart {
   id: string
@@ -106,26 +100,14 @@ async function storeLaps(db: Transaction, part: LogPart, path: LogPath, laps: re
     kind: lap.kind,
     start_s: lap.startS,
     time_s: lap.timeS,
-    first_sample: Math.max(0, firstAfter(path.timeS, lap.startS) - 1),
-    last_sample: Math.min(path.timeS.length - 1, firstAfter(path.timeS, lap.startS + lap.timeS)),
+    first_sample: Math.max(0, indexBefore(path.timeS, lap.startS)),
+    last_sample: Math.min(path.timeS.length - 1, indexBefore(path.timeS, lap.startS + lap.timeS) + 1),
     flags: JSON.stringify(lap.flags),
   }))).onConflict(['team_id', 'id']).merge(CUT_COLUMNS)
   await db('lap_sectors').where('team_id', part.team_id).whereIn('lap_id', ids).delete()
   const sectors = laps.flatMap((lap, i) => lap.sectorsS.map((time, j) =>
     ({ team_id: part.team_id, lap_id: ids[i], ordinal: j + 1, time_s: time })))
   if (sectors.length) await db('lap_sectors').insert(sectors)
-}
-
-/** Index of the first sample after an instant; the length when there is none. */
-function firstAfter(timeS: Float64Array, instantS: number): number {
-  let low = 0
-  let high = timeS.length
-  while (low < high) {
-    const middle = (low + high) >> 1
-    if (timeS[middle]! > instantS) high = middle
-    else low = middle + 1
-  }
-  return low
 }
 
 /** Distance driven in the fastest lap without a flag, metres. */

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { makePlane, pointToPlane, type GlobePoint } from '../plane'
 import { idSchema, nameSchema, notesSchema } from './common'
 
 export const DIRECTIONS = ['clockwise', 'anticlockwise'] as const
@@ -34,6 +35,9 @@ const pointSchema = z.object({
   longitudeDeg: z.number().min(-180).max(180),
 })
 
+/** No track is this wide; a longer line would cut half the circuit. */
+const LONGEST_LINE_M = 1000
+
 export const timingLineSchema = z.object({
   kind: z.enum(['start_finish', 'sector']),
   /** 0 for the start/finish line, 1..n for sector lines in driving order. */
@@ -41,7 +45,13 @@ export const timingLineSchema = z.object({
   a: pointSchema,
   b: pointSchema,
 }).refine(line => (line.kind === 'start_finish') === (line.ordinal === 0), { path: ['ordinal'], message: 'the start/finish line has ordinal 0, sector lines count from 1' })
-  .refine(line => line.a.latitudeDeg !== line.b.latitudeDeg || line.a.longitudeDeg !== line.b.longitudeDeg, { path: ['b'], message: 'the two ends of a line cannot be the same point' })
+  .refine(line => lengthM(line) > 0, { path: ['b'], message: 'the two ends of a line cannot be the same point' })
+  .refine(line => lengthM(line) <= LONGEST_LINE_M, { path: ['b'], message: `a line is at most ${LONGEST_LINE_M} m long` })
+
+function lengthM({ a, b }: { a: GlobePoint, b: GlobePoint }): number {
+  const { xM, yM } = pointToPlane(makePlane(a.latitudeDeg, a.longitudeDeg), b)
+  return Math.hypot(xM, yM)
+}
 
 const lineSet = z.array(timingLineSchema).max(21).refine(
   lines => lines.map(line => line.ordinal).sort((a, b) => a - b).every((ordinal, i) => ordinal === i),

@@ -46,9 +46,10 @@ describe('lines', () => {
     expect(trial.warnings.map(warning => warning.message).join(' ')).toMatch(/never/)
   })
 
-  it('must be numbered without a gap and have two ends', async () => {
+  it('must be numbered without a gap, have two ends and not be endless', async () => {
     const [start, first] = lines as [typeof lines[0], typeof lines[0]]
-    for (const wrong of [[first], [start, { ...first, ordinal: 2 }], [{ ...start, b: start.a }]]) {
+    // The last reaches two kilometres to the east of its start.
+    for (const wrong of [[first], [start, { ...first, ordinal: 2 }], [{ ...start, b: start.a }], [{ ...start, b: eastwards(start.a, 0.03) }]]) {
       const { status } = await own.client.send<Problem>('PUT', `/api/layouts/${own.layoutId}/lines`, { basedOnVersion: 0, lines: wrong })
       expect(status).toBe(400)
     }

@@ -129,8 +129,8 @@ function footWithin(reference: LapPath, x: number, y: number, fromM: number, toM
  * Station of every point of a lap on the path of another: the foot of its perpendicular, looked for only near its
  * predecessor's (5 m back to 10 m more than the car has driven since), so that a neighbouring straight cannot be
  * mistaken. A car further than 25 m from the reference is off the track: its station stands still, and the search
- * reaches ahead by three times the distance that it has driven since, so that it finds back. Station never falls:
- * where the foot goes back it stands still too.
+ * reaches ahead by three times the distance that it has driven since, and is done again each time that has grown by
+ * 2 %, so that it finds back. Station never falls: where the foot goes back it stands still too.
  *
  * @param reference path of the lap along which station is measured
  * @param lap       path of the lap to be placed

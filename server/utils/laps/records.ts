@@ -39,7 +39,7 @@ export interface RecordSplitter {
  * given to `onRecord` is one object used again and again: read it at once. Pushed bytes are neither kept nor changed.
  * A quote that is not closed within 64 KiB and 100 line ends is a stray one, an ordinary character of its line.
  * @throws {LapsError} 'no_table' when a line is longer than 1 MiB
- * @see RFC 4180 section 2, rules 1, 2 and 5 to 7. O(n), at worst 100 looks at a byte; memory of one chunk and one record.
+ * @see RFC 4180 section 2, rules 1, 2 and 5 to 7. O(n), at worst 100 looks at a byte; memory of a chunk and a record.
  */
 export function createRecordSplitter(delimiter: string, onRecord: (record: RecordRange) => void): RecordSplitter {
   const delimiterByte = delimiter.charCodeAt(0)
@@ -108,7 +108,7 @@ function countFeeds(bytes: Uint8Array, start: number, stop: number): number {
   return feeds
 }
 
-/** Where a cell or record ends, or what is known instead: it goes on beyond these bytes, or its quote is a stray one. */
+/** Where a cell or record ends, or that it goes on beyond these bytes, or that its quote is a stray one. */
 type Stop = number | 'more' | 'stray'
 
 /**

@@ -78,6 +78,14 @@ describe('lineReport', () => {
     expect(report.warnings[0]!.message).toContain('sector line 2')
   })
 
+  it('does not say so of a line that was crossed before the first lap or after the last alone', () => {
+    const [start, one] = [line(0), line(1)]
+    const missed = laps.map(each => ({ ...each, sectorsS: [null, null] }))
+    const sector = use(one, [pass(50), pass(100), pass(450)])
+    const report = lineReport([start, one], use(start, starts), [sector], missed, false)
+    expect(codes(report)).toEqual([])
+  })
+
   it('says when the log was driven the wrong way', () => {
     const start = line(0)
     expect(codes(lineReport([start], use(start, starts, []), [], [], true))).toEqual(['wrong_direction'])
