@@ -48,8 +48,9 @@ describe('lines', () => {
 
   it('must be numbered without a gap, have two ends and not be endless', async () => {
     const [start, first] = lines as [typeof lines[0], typeof lines[0]]
-    // The last reaches two kilometres to the east of its start.
-    for (const wrong of [[first], [start, { ...first, ordinal: 2 }], [{ ...start, b: start.a }], [{ ...start, b: eastwards(start.a, 0.03) }]]) {
+    const point = { ...start, b: start.a }
+    const twoKilometres = { ...start, b: eastwards(start.a, 0.03) }
+    for (const wrong of [[first], [start, { ...first, ordinal: 2 }], [point], [twoKilometres]]) {
       const { status } = await own.client.send<Problem>('PUT', `/api/layouts/${own.layoutId}/lines`, { basedOnVersion: 0, lines: wrong })
       expect(status).toBe(400)
     }
