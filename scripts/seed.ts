@@ -54,8 +54,10 @@ async function addPeople(database: knex.Knex): Promise<{ owner: Client, me: Me }
   const client = makeClient(url)
   const me = await client.must<Me>('POST', '/api/register', { ...owner, teamName: PLAN.team })
   for (const person of others) {
-    const { id } = await makeClient(url).must<Me>('POST', '/api/register', { ...person, teamName: `${person.name}’s own` })
+    const { id, teams } = await makeClient(url).must<Me>('POST', '/api/register', { ...person, teamName: person.name })
     await database('memberships').insert({ team_id: me.teams[0]!.id, user_id: id, role: person.role })
+    // Invited people need no team of their own.
+    await database('teams').where('id', teams[0]!.id).delete()
   }
   return { owner: client, me }
 }

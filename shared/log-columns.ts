@@ -51,16 +51,28 @@ export function withChannel(choice: ColumnChoice, channel: string | null, guess:
   return { ...choice, channel, unit: kept ? choice.unit : units[0]!.value }
 }
 
-export interface ColumnCounts { used: number, total: number, doubtful: number }
+export interface ColumnCounts {
+  /** Columns that are a channel Lapwright knows. */
+  used: number
+  /** Columns kept under their own name. */
+  kept: number
+  total: number
+  doubtful: number
+  /** What no column is, and laps cannot do without. */
+  missing: string[]
+}
 
-/** How many columns are used, and how many of the guesses want a look. */
+/** How many columns are used, how many of the guesses want a look, and what is still missing. */
 export function columnCounts(preview: LogPreview, choices: readonly ColumnChoice[]): ColumnCounts {
-  const used = choices.filter(choice => choice.channel !== null)
+  const named = choices.filter(choice => choice.channel !== null)
+  const used = named.filter(choice => channelKind(choice.channel!))
+  const missing = ['time', 'latitude', 'longitude'].filter(name => !named.some(choice => choice.channel === name))
   const doubtful = choices.filter((choice, i) => {
     const guess = preview.columns[i]!
     return isGuess(choice, guess) && guess.confidence === 'likely'
   })
-  return { used: used.length, total: choices.length, doubtful: doubtful.length }
+  const kept = named.length - used.length
+  return { used: used.length, kept, total: choices.length, doubtful: doubtful.length, missing }
 }
 
 /** Whether a choice is still what the sniffer guessed. */

@@ -21,11 +21,13 @@ export function logSentence(
 
 function columnsSentence(counts: ColumnCounts | null): Sentence {
   if (!counts) return ['The columns of this log are not known yet.']
+  if (counts.missing.length) return [`No column is marked as ${counts.missing.join(' or ')}: laps need time, latitude and longitude.`]
   const matched = counts.used === counts.total
     ? `All of its ${countInWords(counts.total, 'column')} are matched`
     : `${asSentence(countInWords(counts.used, 'column'))} of ${counts.total} ${counts.used === 1 ? 'is' : 'are'} matched`
-  if (counts.doubtful === 0) return [`${matched}; none wants a second look.`]
-  return [`${matched}; ${countInWords(counts.doubtful, 'guess wants', 'guesses want')} a look.`]
+  const kept = counts.kept ? `, ${countInWords(counts.kept, 'is', 'are')} kept under ${counts.kept === 1 ? 'its own name' : 'their own names'}` : ''
+  if (counts.doubtful === 0) return [`${matched}${kept}; none wants a second look.`]
+  return [`${matched}${kept}; ${countInWords(counts.doubtful, 'guess wants', 'guesses want')} a look.`]
 }
 
 function readSentence(log: Pick<Log, 'channels' | 'durationS' | 'problems'>): Sentence {

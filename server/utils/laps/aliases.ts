@@ -48,6 +48,8 @@ export const ALIASES: Readonly<Record<string, readonly string[]>> = {
 
 /** Names that mean a channel only together with a unit that fits it: `lat (g)` is no latitude. */
 export const ALIASES_WITH_UNIT: Readonly<Record<string, readonly string[]>> = {
+  time: ['uhr'],
+  speed: ['v'],
   longitudinal_acceleration: ['longitudinal', 'long', 'lon', 'inline'],
   lateral_acceleration: ['lateral', 'lat'],
   vertical_acceleration: ['vertical', 'vert'],

@@ -62,8 +62,10 @@ describe('choices', () => {
 
   it('counts what is used and which guesses want a look, until they are set by hand', () => {
     const choices = startingChoices(PREVIEW, null)
-    expect(columnCounts(PREVIEW, choices)).toEqual({ used: 5, total: 6, doubtful: 1 })
+    expect(columnCounts(PREVIEW, choices)).toEqual({ used: 4, kept: 1, total: 6, doubtful: 1, missing: [] })
     const corrected = choices.map(choice => choice.index === 3 ? { ...choice, unit: 'mph' } : choice)
     expect(columnCounts(PREVIEW, corrected).doubtful).toBe(0)
+    const without = choices.map(choice => choice.channel === 'latitude' ? { ...choice, channel: null } : choice)
+    expect(columnCounts(PREVIEW, without).missing).toEqual(['latitude'])
   })
 })

@@ -16,9 +16,14 @@ describe('logSentence', () => {
   })
 
   it('counts what is matched and what wants a look', () => {
-    expect(says('mapping', { used: 9, total: 11, doubtful: 3 })).toBe('Nine columns of 11 are matched; three guesses want a look.')
-    expect(says('mapping', { used: 4, total: 4, doubtful: 1 })).toBe('All of its four columns are matched; one guess wants a look.')
-    expect(says('mapping', { used: 1, total: 4, doubtful: 0 })).toBe('One column of 4 is matched; none wants a second look.')
+    const counts = { used: 9, kept: 0, total: 11, doubtful: 3, missing: [] }
+    expect(says('mapping', counts)).toBe('Nine columns of 11 are matched; three guesses want a look.')
+    expect(says('mapping', { ...counts, used: 4, total: 4, doubtful: 1 })).toBe('All of its four columns are matched; one guess wants a look.')
+    expect(says('mapping', { ...counts, used: 1, total: 4, doubtful: 0 })).toBe('One column of 4 is matched; none wants a second look.')
+    expect(says('mapping', { ...counts, kept: 2 }))
+      .toBe('Nine columns of 11 are matched, two are kept under their own names; three guesses want a look.')
+    expect(says('mapping', { ...counts, missing: ['latitude', 'longitude'] }))
+      .toBe('No column is marked as latitude or longitude: laps need time, latitude and longitude.')
   })
 
   it('says what was read and whether rows had problems', () => {

@@ -57,6 +57,15 @@ describe('the needed three', () => {
   })
 })
 
+describe('names too short to mean anything by themselves', () => {
+  it('are recognised where a unit stands with them', () => {
+    expect(one('V (mph)')).toEqual(['speed', 'mph', 'sure'])
+    expect(one('v [km/h]')).toEqual(['speed', 'km/h', 'sure'])
+    expect(one('Uhr [s]')).toEqual(['time', 's', 'sure'])
+    expect(one('V (V)')[0]).not.toBe('speed')
+  })
+})
+
 describe('units', () => {
   it.each([
     ['Speed (km/h)', 'speed', 'km/h'], ['speed [mph]', 'speed', 'mph'], ['speed_mps', 'speed', 'm/s'], ['speed_km_h', 'speed', 'km/h'],
