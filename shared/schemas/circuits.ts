@@ -64,7 +64,6 @@ export const linesBody = z.object({
   basedOnVersion: z.int().min(0),
   lines: lineSet,
 })
-export type LinesBody = z.infer<typeof linesBody>
 
 export const savedLineSchema = z.object({
   id: idSchema,
@@ -118,7 +117,6 @@ export const lineTrialBody = z.object({
   logId: idSchema,
   lines: lineSet.refine(lines => lines.length > 0, 'a start/finish line is needed first'),
 })
-export type LineTrialBody = z.infer<typeof lineTrialBody>
 
 /** What a set of lines would do to a log, worked out without storing anything. */
 export const lineTrialSchema = z.object({

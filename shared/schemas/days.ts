@@ -66,7 +66,6 @@ export const excludeBody = z.discriminatedUnion('excluded', [
   z.object({ excluded: z.literal(true), reason: z.string().trim().min(1, 'please say why, for example: traffic in corner 8').max(200, 'at most 200 characters') }),
   z.object({ excluded: z.literal(false) }),
 ])
-export type ExcludeBody = z.infer<typeof excludeBody>
 
 /** A log as lists show it. */
 export const logSummarySchema = z.object({

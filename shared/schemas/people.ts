@@ -10,19 +10,16 @@ export const registerBody = z.object({
   password: passwordSchema,
   teamName: nameSchema,
 })
-export type RegisterBody = z.infer<typeof registerBody>
 
 export const signInBody = z.object({
   email: emailSchema,
   password: z.string().min(1, 'please give your password').max(200),
 })
-export type SignInBody = z.infer<typeof signInBody>
 
 export const changePasswordBody = z.object({
   currentPassword: z.string().min(1, 'please give your present password').max(200),
   newPassword: passwordSchema,
 })
-export type ChangePasswordBody = z.infer<typeof changePasswordBody>
 
 /** Who is signed in, and in which teams with which role. */
 export const meSchema = z.object({

@@ -66,7 +66,6 @@ export const setupBody = z.object({
   basedOnId: idSchema.nullable().default(null),
   sheet: sheetSchema,
 })
-export type SetupBody = z.infer<typeof setupBody>
 
 export const setupSummarySchema = z.object({
   id: idSchema,
