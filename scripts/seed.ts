@@ -9,13 +9,12 @@ import { randomBytes } from 'node:crypto'
 import { existsSync, readFileSync, writeFileSync } from 'node:fs'
 import process from 'node:process'
 import knex from 'knex'
-import { makeClient, waitFor, type Client } from '../seeds/client'
+import { makeClient, type Client } from '../seeds/client'
 import { demoLogs } from '../seeds/harrow-fell/demo-logs'
 import { PLAN, type PlannedDay } from '../seeds/harrow-fell/plan'
 import { makeTrack } from '../seeds/harrow-fell/track'
+import { uploadLog } from '../seeds/upload'
 import type { Me } from '../shared/schemas/people'
-import type { Log } from '../shared/schemas/days'
-import type { PreviewColumn } from '../shared/schemas/logs'
 
 interface SignIn { name: string, email: string, role: string, password: string }
 
@@ -111,27 +110,9 @@ async function addDay(owner: Client, day: PlannedDay, around: Around): Promise<v
       hotPressures,
       notes: said,
     })
-    await addLog(owner, outing.id, log.fileName, log.csv)
+    const read = await uploadLog(owner, outing.id, log.fileName, log.csv)
+    if (read.status !== 'ready') throw new Error(`${log.fileName} was not cut into laps: ${read.problem?.message ?? read.status}`)
   }
-}
-
-async function addLog(owner: Client, outingId: string, fileName: string, csv: string): Promise<void> {
-  const sent = await owner.upload<{ id: string, status: string, detail?: string }>(`/api/outings/${outingId}/logs`, fileName, csv)
-  if (sent.status !== 201) throw new Error(`${fileName} was answered with ${sent.status}: ${sent.body.detail}`)
-  const { id } = sent.body
-  if (sent.body.status === 'mapping') {
-    const { preview } = await owner.must<Log>('GET', `/api/logs/${id}`)
-    await owner.must('PUT', `/api/logs/${id}/columns`, { columns: preview!.columns.map(choiceOf) })
-  }
-  await waitFor(`the laps of ${fileName}`, async () => {
-    const log = await owner.must<Log>('GET', `/api/logs/${id}`)
-    if (log.status === 'refused') throw new Error(`${fileName} was refused: ${log.problem?.message}`)
-    return log.status === 'ready'
-  })
-}
-
-function choiceOf({ index, source, channel, unit }: PreviewColumn) {
-  return { index, source, channel, unit }
 }
 
 const logs = demoLogs()

@@ -2,9 +2,16 @@
 import { appendFileSync, mkdirSync } from 'node:fs'
 import { dirname } from 'node:path'
 
+let stream = process.stdout
+
+/** Where progress is printed: standard output, unless that belongs to a result. */
+export function speakOn(other) {
+  stream = other
+}
+
 /** Print one line of progress. */
 export function say(line = '') {
-  process.stdout.write(`${line}\n`)
+  stream.write(`${line}\n`)
 }
 
 /**

@@ -1,69 +1,20 @@
 // The work of `npm test`.
-import { chmodSync, existsSync, mkdirSync, rmSync } from 'node:fs'
+import { existsSync } from 'node:fs'
 import { join } from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
-import { aptInstall } from './apt.mjs'
-import { ensureBuild } from './build.mjs'
-import { completeSettings, writeEnvFile } from './env-file.mjs'
+import { needChromium } from './chromium.mjs'
+import { clearGround, groundFor, makeGround, serveGround } from './ground.mjs'
 import { lastWords } from './last-words.mjs'
 import { ensurePackages, requireRoom } from './packages.mjs'
-import { makePlaces, placesIn, ROOT, shown } from './places.mjs'
-import { freePorts } from './ports.mjs'
-import { removeCluster } from './postgres.mjs'
+import { ROOT, shown } from './places.mjs'
 import { takeLock } from './processes.mjs'
 import { endRunning } from './run.mjs'
 import { fail, say, sentenceOf } from './say.mjs'
-import { ensureServers, stopServers } from './servers.mjs'
-import { ensureServices } from './services.mjs'
 import { partsAsked, PREPARED, prepare, runPart, SERVED, sumUp } from './test-parts.mjs'
-
-const CHROMIUM = '/usr/bin/chromium'
-const FOLDER = '.lapwright-test'
-
-function stage() {
-  const name = process.env.LAPWRIGHT_TEST_NAME || 'main'
-  if (!/^[\w-]+$/.test(name)) fail(`LAPWRIGHT_TEST_NAME=${name} cannot name a folder: use letters, digits and hyphens.`)
-  const suffix = name === 'main' ? '' : `-${name}`
-  const places = placesIn(join(FOLDER, name))
-  return {
-    places, buildDir: `.nuxt-test${suffix}`, outputDir: `.output-test${suffix}`,
-    storage: join(places.home, 'storage'), envFile: join(places.home, 'test.env'),
-  }
-}
-
-/** Stop and remove what this run, or one that was killed, has left. */
-async function clear({ places, outputDir, storage, envFile }) {
-  await stopServers(places, outputDir)
-  await removeCluster(places.cluster)
-  for (const path of [storage, envFile]) rmSync(path, { recursive: true, force: true })
-}
-
-async function serve({ places, buildDir, outputDir, storage, envFile }) {
-  const [web, worker, postgres] = await freePorts(3)
-  const ports = { LAPWRIGHT_PORT: web, LAPWRIGHT_WORKER_PORT: worker, LAPWRIGHT_PG_PORT: postgres }
-  mkdirSync(storage, { recursive: true })
-  const settings = completeSettings({}, ports, storage)
-  await ensureServices(places, settings, { throwaway: true })
-  const build = await ensureBuild({ buildDir, outputDir, logFolder: places.log })
-  await ensureServers({ places, settings, outputDir, build })
-  const env = {
-    ...settings,
-    LAPWRIGHT_TEST_URL: `http://127.0.0.1:${web}`, LAPWRIGHT_TEST_WORKER_URL: `http://127.0.0.1:${worker}`,
-    LAPWRIGHT_OUTPUT_DIR: join(ROOT, outputDir), LAPWRIGHT_TEST_RUN_DIR: places.run,
-  }
-  writeEnvFile(envFile, env)
-  return env
-}
-
-async function needChromium(logFolder) {
-  if (existsSync(CHROMIUM)) return
-  say('Installing Chromium from Debian ...')
-  await aptInstall(['chromium'], { why: 'Chromium is needed for the tests in the browser', logFolder })
-}
 
 async function tryToServe(ground) {
   try {
-    return { ok: true, env: await serve(ground) }
+    return { ok: true, env: await serveGround(ground) }
   }
   catch (error) {
     say(sentenceOf(error, ground.places.errorLog))
@@ -116,7 +67,7 @@ function listen(stopping) {
 async function prepareAll(parts, { places, buildDir }) {
   requireRoom()
   await ensurePackages(places.log)
-  if (parts.includes('e2e')) await needChromium(places.log)
+  if (parts.includes('e2e')) await needChromium('Chromium is needed for the tests in the browser', places.log)
   // tsconfig.json leads to `.nuxt`, which tools read even when it is not theirs.
   const folders = existsSync(join(ROOT, '.nuxt', 'tsconfig.json')) ? [] : ['.nuxt']
   if (parts.some(part => PREPARED.has(part))) folders.push(buildDir)
@@ -129,12 +80,11 @@ async function prepareAll(parts, { places, buildDir }) {
 
 /** @returns {Promise<number>} the exit code */
 export async function test(words) {
-  const startedAt = Date.now(), stopping = { signal: '' }, ground = stage()
+  const startedAt = Date.now(), stopping = { signal: '' }, ground = groundFor('test', process.env.LAPWRIGHT_TEST_NAME || undefined)
   const onlyServers = words.includes('servers')
   const { parts, files, unknown } = partsAsked(words.filter(word => word !== 'servers'))
   if (unknown.length) fail(`There is no part "${unknown[0]}": name lint, types, unit, nuxt, api, e2e or servers.`)
-  makePlaces(ground.places)
-  chmodSync(join(ROOT, FOLDER), 0o755)
+  makeGround(ground)
   const other = takeLock(join(ground.places.run, 'test.lock'), 'test.mjs')
   if (other) {
     fail(`A test run is at work in this folder (process ${other}): wait for it, `
@@ -142,13 +92,13 @@ export async function test(words) {
   }
   listen(stopping)
   try {
-    await clear(ground)
+    await clearGround(ground)
     await prepareAll(onlyServers ? [] : parts, ground)
     if (!onlyServers) {
       const results = await runParts(parts, files, ground, stopping)
       return stopping.signal ? 130 : report(results, startedAt)
     }
-    const env = await serve(ground)
+    const env = await serveGround(ground)
     say(`The servers under test are running at ${env.LAPWRIGHT_TEST_URL}; settings are in ${shown(ground.envFile)}.`)
     say('Ctrl-C stops them.')
     while (!stopping.signal) await sleep(200)
@@ -160,7 +110,7 @@ export async function test(words) {
     return 130
   }
   finally {
-    await clear(ground)
+    await clearGround(ground)
     if (stopping.signal) say('Stopped; nothing is left running.')
   }
 }

@@ -5,7 +5,10 @@ import type { Layout, SavedLine } from '../../shared/schemas/circuits'
 import type { Log, Outing } from '../../shared/schemas/days'
 import type { Me } from '../../shared/schemas/people'
 import { emptySheet } from '../../shared/schemas/setups'
-import { makeClient, waitFor, type Client } from '../../seeds/client'
+import { makeClient, type Client } from '../../seeds/client'
+import { uploadLog } from '../../seeds/upload'
+
+export { confirmColumns, settled } from '../../seeds/upload'
 
 export const PASSWORD = 'a long enough password'
 
@@ -74,31 +77,14 @@ export async function saveLines(
   return client.must('PUT', `/api/layouts/${layoutId}/lines`, { basedOnVersion: linesVersion, lines })
 }
 
-/** Uploads a log, takes the columns as they were guessed, and waits until it has been read. */
-export async function uploadAndRead(
-  { client }: Garage,
+/** Uploads a log to an outing of this team, takes its columns as guessed, and waits until it has been read. */
+export function uploadAndRead(
+  { client }: Registered,
   outingId: string,
   fileName: string,
   bytes: BlobPart,
 ): Promise<Log> {
-  const sent = await client.upload<{ id: string, status: string, detail?: string }>(`/api/outings/${outingId}/logs`, fileName, bytes)
-  if (sent.status !== 201) throw new Error(`upload answered ${sent.status}: ${sent.body.detail}`)
-  if (sent.body.status === 'mapping') await confirmColumns(client, sent.body.id)
-  return settled(client, sent.body.id)
-}
-
-export async function confirmColumns(client: Client, logId: string): Promise<void> {
-  const { preview } = await client.must<Log>('GET', `/api/logs/${logId}`)
-  const columns = preview!.columns.map(({ index, source, channel, unit }) => ({ index, source, channel, unit }))
-  await client.must('PUT', `/api/logs/${logId}/columns`, { columns })
-}
-
-/** The log once nothing works on it any more. */
-export function settled(client: Client, logId: string): Promise<Log> {
-  return waitFor('the log', async () => {
-    const log = await client.must<Log>('GET', `/api/logs/${logId}`)
-    return ['ready', 'no_lines', 'refused'].includes(log.status) ? log : null
-  })
+  return uploadLog(client, outingId, fileName, bytes)
 }
 
 export async function lapsOf({ client }: Registered, outingId: string): Promise<Outing['laps']> {
