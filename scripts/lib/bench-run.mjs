@@ -1,8 +1,7 @@
 // The work of `npm run bench`.
-import { rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { needChromium } from './chromium.mjs'
-import { clearGround, groundFor, makeGround, serveGround } from './ground.mjs'
+import { clearGround, groundFor, makeGround, removeBuild, serveGround } from './ground.mjs'
 import { ensurePackages, requireRoom } from './packages.mjs'
 import { ROOT } from './places.mjs'
 import { takeLock } from './processes.mjs'
@@ -49,9 +48,7 @@ export async function bench(words) {
   }
   finally {
     await clearGround(ground)
-    for (const folder of [ground.outputDir, ground.buildDir]) {
-      rmSync(join(ROOT, folder), { recursive: true, force: true })
-    }
+    removeBuild(ground)
   }
 }
 

@@ -146,7 +146,9 @@ function lapBody(row: LapRow, compared: ComparedLap): ComparedLapBody {
 /** Numbers for the wire: as many decimals as mean something, null where a value is missing. */
 function rounded(values: Float64Array, digits: number): (number | null)[] {
   const scale = 10 ** digits
-  return Array.from(values, value => Number.isFinite(value) ? Math.round(value * scale) / scale : null)
+  const result: (number | null)[] = []
+  for (const value of values) result.push(Number.isFinite(value) ? Math.round(value * scale) / scale : null)
+  return result
 }
 
 /** Stations at which the faster lap crossed the sector lines, as far as it crossed them. */

@@ -79,8 +79,13 @@ function planeAtStart(lap: LapTrace): Plane {
 /** Path, motion and logged channels of a lap on one plane. */
 function placed(lap: LapTrace, plane: Plane): PlacedLap {
   const { xM, yM } = toPlane(plane, lap.latitudeDeg, lap.longitudeDeg)
-  const known = Array.from(xM.keys()).filter(i => !Number.isNaN(xM[i]!))
-  const pick = (values: ArrayLike<number>) => Float64Array.from(known, i => values[i]!)
+  const known: number[] = []
+  for (let i = 0; i < xM.length; i++) if (!Number.isNaN(xM[i]!)) known.push(i)
+  const pick = (values: ArrayLike<number>) => {
+    const picked = new Float64Array(known.length)
+    for (let k = 0; k < picked.length; k++) picked[k] = values[known[k]!]!
+    return picked
+  }
   const endS = lap.startS + lap.lapTimeS
   const logged = (name: string): Float64Array | null => {
     const channel = lap.channels[name]
@@ -95,14 +100,14 @@ function placed(lap: LapTrace, plane: Plane): PlacedLap {
   const speed = logged('speed')
   const longitudinal = logged('longitudinal_acceleration')
   const lateral = logged('lateral_acceleration')
-  const motion = deriveMotion(timeS, x, y, speed)
+  const derived = speed && longitudinal && lateral ? null : deriveMotion(timeS, x, y, speed)
   const source = (values: Float64Array | null): Source => values ? 'logged' : 'derived'
   return {
     path: lapPath(timeS, x, y, lap.startS, lap.lapTimeS),
     timeS,
-    speedMps: motion.speedMps,
-    longitudinalMps2: longitudinal ?? motion.longitudinalMps2,
-    lateralMps2: lateral ?? motion.lateralMps2,
+    speedMps: derived?.speedMps ?? speed!,
+    longitudinalMps2: longitudinal ?? derived!.longitudinalMps2,
+    lateralMps2: lateral ?? derived!.lateralMps2,
     source: { speed: source(speed), longitudinal: source(longitudinal), lateral: source(lateral) },
   }
 }

@@ -25,21 +25,24 @@ export function interpolate(
   bridge: number,
 ): Float64Array {
   const result = new Float64Array(wanted.length).fill(Number.NaN)
-  const known: number[] = []
-  for (let i = 0; i < at.length; i++) {
-    if (!Number.isNaN(values[i]!)) known.push(i)
+  const n = at.length
+  const knownFrom = (i: number) => {
+    while (i < n && Number.isNaN(values[i]!)) i++
+    return i
   }
-  let k = 0
+  let i = knownFrom(0)
+  let j = knownFrom(i + 1)
   for (let w = 0; w < wanted.length; w++) {
-    while (k + 1 < known.length && at[known[k + 1]!]! <= wanted[w]!) k++
-    const i = known[k]
-    if (i === undefined || at[i]! > wanted[w]!) continue
+    while (j < n && at[j]! <= wanted[w]!) {
+      i = j
+      j = knownFrom(j + 1)
+    }
+    if (i >= n || at[i]! > wanted[w]!) continue
     if (at[i] === wanted[w]) {
       result[w] = values[i]!
       continue
     }
-    const j = known[k + 1]
-    if (j === undefined || (j > i + 1 && at[j]! - at[i]! > bridge)) continue
+    if (j >= n || (j > i + 1 && at[j]! - at[i]! > bridge)) continue
     result[w] = values[i]! + (wanted[w]! - at[i]!) / (at[j]! - at[i]!) * (values[j]! - values[i]!)
   }
   return result

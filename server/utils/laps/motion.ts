@@ -28,6 +28,13 @@ export interface QuadraticWeights { value: Float64Array, slope: Float64Array, se
  */
 export function quadraticWeights(offsets: ArrayLike<number>): QuadraticWeights {
   const n = offsets.length
+  const weights = { value: new Float64Array(n), slope: new Float64Array(n), second: new Float64Array(n) }
+  fillWeights(offsets, n, weights)
+  return weights
+}
+
+/** The weights of the first n offsets, into arrays of at least that length. */
+function fillWeights(offsets: ArrayLike<number>, n: number, weights: QuadraticWeights): void {
   let scale = 0
   for (let k = 0; k < n; k++) scale = Math.max(scale, Math.abs(offsets[k]!))
   let s1 = 0
@@ -49,14 +56,12 @@ export function quadraticWeights(offsets: ArrayLike<number>): QuadraticWeights {
   const c12 = s1 * s2 - n * s3
   const c22 = n * s2 - s1 * s1
   const det = n * c00 + s1 * c01 + s2 * c02
-  const weights = { value: new Float64Array(n), slope: new Float64Array(n), second: new Float64Array(n) }
   for (let k = 0; k < n; k++) {
     const u = offsets[k]! / scale
     weights.value[k] = (c00 + c01 * u + c02 * u * u) / det
     weights.slope[k] = (c01 + c11 * u + c12 * u * u) / det / scale
     weights.second[k] = 2 * (c02 + c12 * u + c22 * u * u) / det / scale / scale
   }
-  return weights
 }
 
 interface Derivatives { slope: Float64Array, second: Float64Array }
@@ -90,14 +95,26 @@ function derivatives(timeS: ArrayLike<number>, columns: ArrayLike<number>[]): De
   const unknown = () => new Float64Array(n).fill(Number.NaN)
   const results = columns.map(() => ({ slope: unknown(), second: unknown() }))
   const used: number[] = []
+  // One set of arrays for all windows: a new one for each sample cost more than the arithmetic.
+  let room = 0
+  let offsets = new Float64Array(room)
+  let weights = quadraticWeights(offsets)
   for (let i = 0; i < n; i++) {
     windowAround(timeS, columns[0]!, i, used)
-    if (used.length < 3) continue
-    const weights = quadraticWeights(used.map(k => timeS[k]! - timeS[i]!))
-    for (const [c, column] of columns.entries()) {
+    const count = used.length
+    if (count < 3) continue
+    if (count > room) {
+      room = 2 * count
+      offsets = new Float64Array(room)
+      weights = quadraticWeights(offsets)
+    }
+    for (let k = 0; k < count; k++) offsets[k] = timeS[used[k]!]! - timeS[i]!
+    fillWeights(offsets, count, weights)
+    for (let c = 0; c < columns.length; c++) {
+      const column = columns[c]!
       let slope = 0
       let second = 0
-      for (let k = 0; k < used.length; k++) {
+      for (let k = 0; k < count; k++) {
         slope += weights.slope[k]! * column[used[k]!]!
         second += weights.second[k]! * column[used[k]!]!
       }

@@ -1,0 +1,37 @@
+// The work of `npm run pictures`.
+import { rmSync } from 'node:fs'
+import { join } from 'node:path'
+import { needChromium } from './chromium.mjs'
+import { ensureDemo } from './demo.mjs'
+import { clearGround, groundFor, makeGround, removeBuild, serveGround } from './ground.mjs'
+import { lastWords } from './last-words.mjs'
+import { ensurePackages, requireRoom } from './packages.mjs'
+import { shown } from './places.mjs'
+import { clusterAt } from './postgres.mjs'
+import { takeLock } from './processes.mjs'
+import { fail, say } from './say.mjs'
+import { runScript } from './services.mjs'
+
+export async function pictures() {
+  const ground = groundFor('pictures'), { places } = ground
+  makeGround(ground)
+  const other = takeLock(join(places.run, 'pictures.lock'), 'pictures.mjs')
+  if (other) fail(`Pictures are being made in this folder already (process ${other}): wait for it.`)
+  try {
+    await clearGround(ground)
+    requireRoom()
+    await ensurePackages(places.log)
+    await needChromium('Chromium is needed to make pictures', places.log)
+    const env = await serveGround(ground)
+    rmSync(places.demo, { force: true })
+    await ensureDemo(places, env, await clusterAt(places.cluster))
+    say('Making the pictures ...')
+    const log = join(places.log, 'pictures.log')
+    const { code, all } = await runScript('take-pictures.ts', { ...env, LAPWRIGHT_DEMO_FILE: places.demo }, log)
+    if (code !== 0) fail(`The pictures could not be made: ${lastWords(all)} (see ${shown(log)}).`)
+  }
+  finally {
+    await clearGround(ground)
+    removeBuild(ground)
+  }
+}
