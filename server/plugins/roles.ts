@@ -1,3 +1,4 @@
+import { setPriority } from 'node:os'
 import process from 'node:process'
 import { workOn } from '../utils/jobs'
 import { cutLayoutJob, giveUpCut } from '../utils/cut-work'
@@ -18,6 +19,8 @@ export default defineNitroPlugin(() => {
   process.once('SIGTERM', runShutdown)
   process.once('SIGINT', runShutdown)
   if (import.meta.prerender || !roles().includes('worker')) return
+  // A page never waits for a log: where both want the processor, the web process comes first.
+  if (!roles().includes('web')) setPriority(10)
   const jobs = [
     workOn('log-read', readLogJob),
     workOn('log-read-failed', giveUpLog),
