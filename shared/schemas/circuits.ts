@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { makePlane, pointToPlane, type GlobePoint } from '../plane'
-import { idSchema, nameSchema, notesSchema } from './common'
+import { basedOn, idSchema, nameSchema, notesSchema, versioned } from './common'
 
 export const DIRECTIONS = ['clockwise', 'anticlockwise'] as const
 
@@ -22,6 +22,7 @@ export const circuitBody = z.object({
   notes: notesSchema,
 })
 export type CircuitBody = z.infer<typeof circuitBody>
+export const circuitChange = circuitBody.extend(basedOn)
 
 export const layoutBody = z.object({
   name: nameSchema,
@@ -29,6 +30,7 @@ export const layoutBody = z.object({
   direction: z.enum(DIRECTIONS).nullable().default(null),
 })
 export type LayoutBody = z.infer<typeof layoutBody>
+export const layoutChange = layoutBody.extend(basedOn)
 
 const pointSchema = z.object({
   latitudeDeg: z.number().min(-90).max(90),
@@ -61,7 +63,7 @@ const lineSet = z.array(timingLineSchema).max(21).refine(
 /** All lines of a layout at once, so that a set is never half changed. */
 export const linesBody = z.object({
   /** `linesVersion` of the layout as it was read; when somebody else has changed the lines since, nothing is saved. */
-  basedOnVersion: z.int().min(0),
+  basedOnVersion: z.int().min(0).max(2_147_483_646),
   lines: lineSet,
 })
 
@@ -86,8 +88,22 @@ export const layoutSchema = z.object({
   /** Goes up with every change of the lines. */
   linesVersion: z.int(),
   lines: z.array(savedLineSchema),
+  ...versioned,
 })
 export type Layout = z.infer<typeof layoutSchema>
+
+/** A layout whose lines were saved, with how many of its logs are cut again. */
+export const savedLinesSchema = layoutSchema.extend({ recutting: z.int() })
+
+/** A layout as the chooser of the comparison lists it. */
+export const layoutChoiceSchema = z.object({
+  id: idSchema,
+  name: z.string(),
+  circuitId: idSchema,
+  circuitName: z.string(),
+  timedLapCount: z.int(),
+})
+export type LayoutChoice = z.infer<typeof layoutChoiceSchema>
 
 export const circuitSchema = z.object({
   id: idSchema,
@@ -96,8 +112,9 @@ export const circuitSchema = z.object({
   timeZone: z.string(),
   notes: z.string(),
   layouts: z.array(layoutSchema
-    .pick({ id: true, name: true, direction: true, lengthM: true })
+    .pick({ id: true, name: true, direction: true, lengthM: true, version: true, changedAt: true })
     .extend({ lineCount: z.int() })),
+  ...versioned,
 })
 export type Circuit = z.infer<typeof circuitSchema>
 

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { dateSchema, idSchema, instantSchema, notesSchema, optionalNumber, optionalPressureKpa } from './common'
+import { basedOn, dateSchema, idSchema, instantSchema, notesSchema, optionalNumber, optionalPressureKpa, versioned } from './common'
 import { settingSchema } from './setups'
 import { LOG_STATUSES, logPreviewSchema, logProblemSchema, columnMapSchema } from './logs'
 
@@ -30,6 +30,7 @@ export const dayBody = z.object({
   notes: notesSchema,
 })
 export type DayBody = z.infer<typeof dayBody>
+export const dayChange = dayBody.extend(basedOn)
 
 export const outingBody = z.object({
   layoutId: idSchema,
@@ -45,11 +46,19 @@ export const outingBody = z.object({
   notes: notesSchema,
 })
 export type OutingBody = z.infer<typeof outingBody>
+export const outingChange = outingBody.extend(basedOn)
+
+/** Logs of an outing that go together with it, each named; an outing with others stays. */
+export const removeOutingQuery = z.object({
+  withLog: z.union([idSchema.transform(id => [id]), z.array(idSchema).max(100)]).default([]),
+})
 
 export const LAP_KINDS = ['out', 'timed', 'in'] as const
 
 export const lapSchema = z.object({
   id: idSchema,
+  /** The log it was cut from. */
+  logId: idSchema.nullable(),
   number: z.int(),
   kind: z.enum(LAP_KINDS),
   startS: z.number(),
@@ -73,6 +82,8 @@ export const logSummarySchema = z.object({
   fileName: z.string(),
   sizeBytes: z.number(),
   status: z.enum(LOG_STATUSES),
+  /** How many rows the reader had to leave out or mend; its own sheet names them. */
+  rowProblems: z.int(),
   /** Why it was refused, or what stands in the way. */
   problem: z.object({ code: z.string(), message: z.string(), row: z.int().optional() }).nullable(),
 })
@@ -116,6 +127,8 @@ export const logProgressSchema = z.object({
   step: z.string().nullable(),
   /** Share of the whole job, 0 to 1. */
   fraction: z.number().min(0).max(1),
+  /** The worker was lost in the middle, and the reading begins again. */
+  restarted: z.boolean().optional(),
 })
 export type LogProgress = z.infer<typeof logProgressSchema>
 
@@ -134,6 +147,7 @@ export const outingSummarySchema = z.object({
   notes: z.string(),
   laps: z.array(lapSchema),
   logs: z.array(logSummarySchema),
+  ...versioned,
   /** Settings that differ from the outing before with the same car. */
   setupChanges: z.array(z.object({ label: z.string(), unit: z.string(), from: settingSchema, to: settingSchema })),
 })
@@ -152,6 +166,7 @@ export const daySchema = z.object({
     layouts: z.array(z.object({ id: idSchema, name: z.string() })),
   }),
   outings: z.array(outingSummarySchema),
+  ...versioned,
 })
 export type Day = z.infer<typeof daySchema>
 
@@ -163,8 +178,14 @@ export const dayListItemSchema = z.object({
   outingCount: z.int(),
   timedLapCount: z.int(),
   bestS: z.number().nullable(),
+  /** In which weather, when there were wet laps; null when all laps were dry. */
+  bestOf: z.enum(['dry', 'wet']).nullable(),
 })
 export type DayListItem = z.infer<typeof dayListItemSchema>
+
+/** A page of days; `next` is the cursor of the page after it, null on the last. */
+export const dayListSchema = z.object({ items: z.array(dayListItemSchema), next: z.string().nullable() })
+export type DayList = z.infer<typeof dayListSchema>
 
 export const outingSchema = outingSummarySchema.omit({ setupChanges: true }).extend({
   teamId: idSchema,
@@ -194,3 +215,7 @@ export const lapChoiceSchema = z.object({
   isOutingBest: z.boolean(),
 })
 export type LapChoice = z.infer<typeof lapChoiceSchema>
+
+/** The demonstration in a team: the day to begin with, and whether it was made just now. */
+export const demonstrationSchema = z.object({ dayId: idSchema, made: z.boolean() })
+export type Demonstration = z.infer<typeof demonstrationSchema>

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { idSchema } from './common'
 
 export const LOG_STATUSES = ['uploading', 'mapping', 'queued', 'processing', 'no_lines', 'ready', 'refused'] as const
 export type LogStatus = (typeof LOG_STATUSES)[number]
@@ -64,3 +65,14 @@ export const logProblemSchema = z.object({
   count: z.int().min(1).optional(),
 })
 export type LogProblem = z.infer<typeof logProblemSchema>
+
+/** A log that has just come: waiting for its columns to be confirmed, or for the worker where its header is known. */
+export const arrivedSchema = z.object({ id: idSchema, status: z.enum(['mapping', 'queued']) })
+
+/** The driven path of a log, thinned for drawing; null where there is no position. */
+export const traceSchema = z.object({
+  timeS: z.array(z.number()),
+  latitudeDeg: z.array(z.number().nullable()),
+  longitudeDeg: z.array(z.number().nullable()),
+  gaps: z.array(z.object({ fromS: z.number(), toS: z.number() })),
+})

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { idSchema, nameSchema, notesSchema, optionalNumber, optionalPressureKpa } from './common'
+import { basedOn, idSchema, nameSchema, notesSchema, optionalNumber, optionalPressureKpa, versioned } from './common'
 
 export const CORNERS = ['fl', 'fr', 'rl', 'rr'] as const
 export type CornerKey = (typeof CORNERS)[number]
@@ -60,6 +60,7 @@ export const carBody = z.object({
   notes: notesSchema,
 })
 export type CarBody = z.infer<typeof carBody>
+export const carChange = carBody.extend(basedOn)
 
 export const setupBody = z.object({
   name: nameSchema,
@@ -94,6 +95,7 @@ export const carSchema = carBody.extend({
   teamId: idSchema,
   notes: z.string(),
   setups: z.array(setupListItemSchema),
+  ...versioned,
 })
 export type Car = z.infer<typeof carSchema>
 

@@ -1,10 +1,13 @@
 import { describe, expect, it } from 'vitest'
 import { findingOf, lapKeys, nameAgainst, plain, sectorRows } from '../../../shared/compare-words'
+import { makeFigures, STANDARD_CHOICE } from '../../../shared/figures'
 import { shownDifferenceS } from '../../../shared/laps'
 import { someComparison, someLap } from './compare-fixture'
 
-const lead = (changes: Parameters<typeof someComparison>[0] = {}) => plain(findingOf(someComparison(changes)).lead)
-const under = (changes: Parameters<typeof someComparison>[0] = {}) => plain(findingOf(someComparison(changes)).under)
+const standard = makeFigures(STANDARD_CHOICE)
+type Changes = Parameters<typeof someComparison>[0]
+const lead = (changes: Changes = {}) => plain(findingOf(someComparison(changes), standard).lead)
+const under = (changes: Changes = {}) => plain(findingOf(someComparison(changes), standard).under)
 const { lap, against } = someComparison()
 
 describe('findingOf', () => {
@@ -51,9 +54,9 @@ describe('findingOf', () => {
 
 describe('nameAgainst and lapKeys', () => {
   it('say what tells the laps apart and no more', () => {
-    expect(nameAgainst(lap, someLap({ number: 5 }))).toBe('lap 5')
-    expect(nameAgainst(lap, against)).toBe('lap 4 of outing 1')
-    expect(nameAgainst(lap, { ...against, day: { id: 'other', date: '2026-08-02', timeZone: 'UTC' } })).toBe('lap 4 of outing 1 on Sun 2 Aug 2026')
+    expect(nameAgainst(lap, someLap({ number: 5 }), standard)).toBe('lap 5')
+    expect(nameAgainst(lap, against, standard)).toBe('lap 4 of outing 1')
+    expect(nameAgainst(lap, { ...against, day: { id: 'other', date: '2026-08-02', timeZone: 'UTC' } }, standard)).toBe('lap 4 of outing 1 on Sun 2 Aug 2026')
   })
 
   it('keep keys different', () => {

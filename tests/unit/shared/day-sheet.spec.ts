@@ -1,12 +1,14 @@
 import { describe, expect, it } from 'vitest'
 import { dayGroups, daySentence, outingSentence, trackSpread, type Sentence } from '../../../shared/day-sheet'
+import { makeFigures, STANDARD_CHOICE } from '../../../shared/figures'
 import { conditionsSchema, type Lap, type OutingSummary } from '../../../shared/schemas/days'
 
+const standard = makeFigures(STANDARD_CHOICE)
 let nextId = 0
 
 function lap(number: number, timeS: number, more: Partial<Lap> = {}): Lap {
   return {
-    id: `lap-${nextId++}`, number, kind: 'timed', startS: 0, timeS, sectorsS: [timeS / 2, timeS / 2], flags: [], excluded: false,
+    id: `lap-${nextId++}`, logId: null, number, kind: 'timed', startS: 0, timeS, sectorsS: [timeS / 2, timeS / 2], flags: [], excluded: false,
     excludedReason: '', ...more,
   }
 }
@@ -17,16 +19,17 @@ function outing(number: number, timesS: number[], more: Partial<OutingSummary> =
     car: { id: 'hatch', name: '2006 hatchback' }, setup: { id: 's11', number: 11, name: '' }, driver: { id: 'n', name: 'Nell Placeholder' },
     fuelStartL: null, passenger: false, conditions: conditionsSchema.parse({}),
     hotPressures: { fl: null, fr: null, rl: null, rr: null },
-    notes: '', laps: timesS.map((timeS, i) => lap(i + 1, timeS)), logs: [], setupChanges: [], ...more,
+    notes: '', laps: timesS.map((timeS, i) => lap(i + 1, timeS)), logs: [], setupChanges: [], version: 1, changedAt: '2026-09-12T12:00:00.000Z',
+    ...more,
   }
 }
 
 function log(status: OutingSummary['logs'][number]['status']): OutingSummary['logs'][number] {
-  return { id: 'log', fileName: 'a.csv', sizeBytes: 1, status, problem: null }
+  return { id: 'log', fileName: 'a.csv', sizeBytes: 1, status, rowProblems: 0, problem: null }
 }
 
 const text = (sentence: Sentence) => sentence.map(part => typeof part === 'string' ? part : part.fig).join('')
-const says = (outings: OutingSummary[]) => text(daySentence({ outings }, dayGroups(outings)))
+const says = (outings: OutingSummary[]) => text(daySentence({ outings }, dayGroups(outings), standard))
 const wet = { ...conditionsSchema.parse({}), wetness: 'wet' as const }
 
 describe('dayGroups', () => {
@@ -81,18 +84,18 @@ describe('daySentence', () => {
 describe('outingSentence', () => {
   it('says the best lap, how many count, and what the best sectors together would have given', () => {
     const laps = [lap(1, 91, { sectorsS: [46, 45] }), lap(2, 90.5, { sectorsS: [45, 45.5] }), lap(3, 95, { excluded: true, excludedReason: 'flag' })]
-    expect(text(outingSentence(outing(3, [], { laps }))))
+    expect(text(outingSentence(outing(3, [], { laps }), standard)))
       .toBe('Outing 3 did 1:30.500 on lap 2; two of its three timed laps count. Its best sectors together are 0.500 s faster.')
   })
 
   it('leaves the sectors out when the best lap holds them all', () => {
-    expect(text(outingSentence(outing(1, [91, 90])))).toBe('Outing 1 did 1:30.000 on lap 2; all of its two laps count.')
-    expect(text(outingSentence(outing(1, [90])))).toBe('Outing 1 did 1:30.000 on lap 1; it is the only timed lap.')
+    expect(text(outingSentence(outing(1, [91, 90]), standard))).toBe('Outing 1 did 1:30.000 on lap 2; all of its two laps count.')
+    expect(text(outingSentence(outing(1, [90]), standard))).toBe('Outing 1 did 1:30.000 on lap 1; it is the only timed lap.')
   })
 
   it('says what is missing', () => {
-    expect(text(outingSentence(outing(2, [])))).toBe('Outing 2 has no log yet.')
-    expect(text(outingSentence(outing(2, [], { logs: [log('no_lines')] })))).toBe('Outing 2 has no lap that counts yet: one log waits for the timing lines.')
+    expect(text(outingSentence(outing(2, []), standard))).toBe('Outing 2 has no log yet.')
+    expect(text(outingSentence(outing(2, [], { logs: [log('no_lines')] }), standard))).toBe('Outing 2 has no lap that counts yet: one log waits for the timing lines.')
   })
 })
 

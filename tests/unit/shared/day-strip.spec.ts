@@ -1,8 +1,11 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
+import { makeFigures, STANDARD_CHOICE } from '../../../shared/figures'
 import { markLabels, stripHeight, stripLabels, stripPoints, stripSentence, tickLabels, type StripLabel } from '../../../shared/day-strip'
 import { lapAxis, stripScale } from '../../../shared/lap-axis'
 import type { LapFigure } from '../../../shared/laps'
+
+const standard = makeFigures(STANDARD_CHOICE)
 
 function lap(timeS: number, more: Partial<LapFigure> = {}): LapFigure {
   return { kind: 'timed', timeS, sectorsS: [], flags: [], excluded: false, excludedReason: '', ...more }
@@ -76,15 +79,15 @@ describe('labels of the axis', () => {
 
   it('writes tenths only where the ticks are that close, and stays on the sheet', () => {
     const scale = stripScale(axis, 520, false)
-    expect(tickLabels([90, 91], 1, scale).map(label => label.text)).toEqual(['1:30', '1:31'])
-    expect(tickLabels([90, 90.5], 0.5, scale).map(label => label.text)).toEqual(['1:30.0', '1:30.5'])
-    const [first] = tickLabels([axis.fromS], 1, scale)
+    expect(tickLabels([90, 91], 1, scale, standard).map(label => label.text)).toEqual(['1:30', '1:31'])
+    expect(tickLabels([90, 90.5], 0.5, scale, standard).map(label => label.text)).toEqual(['1:30.0', '1:30.5'])
+    const [first] = tickLabels([axis.fromS], 1, scale, standard)
     expect(ends(first!)[0]).toBeGreaterThanOrEqual(0)
   })
 })
 
 describe('stripSentence', () => {
   it('says what the strip shows', () => {
-    expect(stripSentence(1, LAPS)).toBe('Laps of outing 1 in driving order: 2:04.000 (out lap), 1:32.400, 1:31.600, 1:33.400 (traffic, corner 8), 1:31.200, 2:11.000 (in lap).')
+    expect(stripSentence(1, LAPS, standard)).toBe('Laps of outing 1 in driving order: 2:04.000 (out lap), 1:32.400, 1:31.600, 1:33.400 (traffic, corner 8), 1:31.200, 2:11.000 (in lap).')
   })
 })

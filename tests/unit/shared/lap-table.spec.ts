@@ -4,7 +4,7 @@ import type { Lap } from '../../../shared/schemas/days'
 
 function lap(number: number, sectorsS: (number | null)[], more: Partial<Lap> = {}): Lap {
   const timeS = sectorsS.reduce<number>((sum, sector) => sum + (sector ?? 0), 0)
-  return { id: `lap-${number}`, number, kind: 'timed', startS: 0, timeS, sectorsS, flags: [], excluded: false, excludedReason: '', ...more }
+  return { id: `lap-${number}`, number, logId: null, kind: 'timed', startS: 0, timeS, sectorsS, flags: [], excluded: false, excludedReason: '', ...more }
 }
 
 const LAPS = [

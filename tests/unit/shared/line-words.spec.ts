@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { plain } from '../../../shared/compare-words'
+import { makeFigures, STANDARD_CHOICE } from '../../../shared/figures'
 import { trialSentence } from '../../../shared/line-words'
 
 const start = { kind: 'start_finish' } as const
@@ -7,7 +8,10 @@ const sector = { kind: 'sector' } as const
 const trial = { timedLaps: 7, bestS: 90.869, lines: [], warnings: [] }
 const now = { mayEdit: true, stored: true }
 
-const said = (...given: Parameters<typeof trialSentence>) => plain(trialSentence(...given))
+type Given = Parameters<typeof trialSentence>
+const standard = makeFigures(STANDARD_CHOICE)
+const said = (lines: Given[0], trial: Given[1], now: Given[2]) =>
+  plain(trialSentence(lines, trial, now, standard))
 
 describe('trialSentence', () => {
   it('says what to do first', () => {

@@ -15,7 +15,8 @@ const OUTING: Outing = {
   id: ID(5), teamId: ID(6), number: 3, startedAt: '2026-09-12T12:20:00.000Z',
   layout: { id: ID(1), name: 'Full', lineCount: 3 }, car: { id: ID(2), name: 'Hatchback' }, setup: { id: ID(3), number: 12, name: '' },
   driver: { id: ID(4), name: 'Nell Placeholder' }, fuelStartL: 22, passenger: true, conditions: FORM.conditions,
-  hotPressures: { fl: 210, fr: 212, rl: 205, rr: null }, notes: 'Yellow flag at corner 8.', laps: [], logs: [],
+  hotPressures: { fl: 210, fr: 212, rl: 205, rr: null }, notes: 'Yellow flag at corner 8.', laps: [], logs: [], version: 1,
+  changedAt: '2026-09-12T13:00:00.000Z',
   day: { id: ID(7), date: '2026-09-12', name: '', circuitId: ID(8), circuitName: 'Harrow Fell', timeZone: 'Europe/London' },
 }
 
