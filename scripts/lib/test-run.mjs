@@ -11,6 +11,7 @@ import { takeLock } from './processes.mjs'
 import { endRunning } from './run.mjs'
 import { fail, say, sentenceOf } from './say.mjs'
 import { partsAsked, PREPARED, prepare, runPart, SERVED, sumUp } from './test-parts.mjs'
+import { needTools } from './tools.mjs'
 
 async function tryToServe(ground) {
   try {
@@ -68,6 +69,7 @@ async function prepareAll(parts, { places, buildDir }) {
   requireRoom()
   await ensurePackages(places.log)
   if (parts.includes('e2e')) await needChromium('Chromium is needed for the tests in the browser', places.log)
+  if (parts.includes('api')) await needTools('curl and Python are needed for the examples of README.md', places.log)
   // tsconfig.json leads to `.nuxt`, which tools read even when it is not theirs.
   const folders = existsSync(join(ROOT, '.nuxt', 'tsconfig.json')) ? [] : ['.nuxt']
   if (parts.some(part => PREPARED.has(part))) folders.push(buildDir)

@@ -1,9 +1,10 @@
 import { defineApiHandler } from '../utils/api'
 import { notFound } from '../utils/problems'
 
-/** What is under /api and nowhere else: a problem like any other, and not a page. */
 export default defineApiHandler({
+  about: 'What is under /api and nowhere else: answered with a problem.',
   who: 'anyone',
+  answer: undefined,
   handler: async () => {
     throw notFound('route')
   },

@@ -1,21 +1,21 @@
+import { setResponseStatus } from 'h3'
 import { changePasswordBody } from '../../shared/schemas/people'
-import { defineApiHandler } from '../utils/api'
-import { ProblemError } from '../utils/problems'
+import { defineStreamHandler } from '../utils/api'
+import { checkPassword } from '../utils/password'
 import { startSession } from '../utils/sessions'
 
-/** A new password ends every session of the person but this one. */
-export default defineApiHandler({
+export default defineStreamHandler({
+  about: 'A new password. It ends every session of the person but this one; tokens stay.',
   who: 'person',
   body: changePasswordBody,
-  handler: async ({ event, db, body, person }) => {
-    const { rows: [held] } = await db.raw<{ rows: { hash: string }[] }>('select app.my_password_hash() as hash')
-    if (!held || !await verifyPassword(held.hash, body.currentPassword)) {
-      const message = 'This is not your present password.'
-      throw new ProblemError(422, 'Password not changed', message, { errors: [{ path: 'currentPassword', message }] })
-    }
+  answer: undefined,
+  stream: async ({ event, transaction, body, person }) => {
+    await checkPassword(event, transaction, person.id, { path: 'currentPassword', typed: body.currentPassword })
     const hash = await hashPassword(body.newPassword)
-    const { rows: [changed] } = await db.raw<{ rows: { epoch: number }[] }>('select app.set_my_password(?) as epoch', [hash])
+    const { rows: [changed] } = await transaction(db => db.raw<{ rows: { epoch: number }[] }>(
+      'select app.set_my_password(?) as epoch', [hash]))
     await startSession(event, person.id, changed!.epoch)
-    return undefined
+    setResponseStatus(event, 204)
+    return null
   },
 })

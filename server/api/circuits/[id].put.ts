@@ -1,14 +1,18 @@
-import { circuitBody } from '../../../shared/schemas/circuits'
+import { circuitChange, circuitSchema } from '../../../shared/schemas/circuits'
 import { idParams } from '../../../shared/schemas/common'
 import { defineApiHandler } from '../../utils/api'
 import { readCircuits } from '../../utils/circuits'
+import { replaceSheet } from '../../utils/versions'
 
 export default defineApiHandler({
+  about: 'Replaces what is said of a circuit.',
   who: { action: 'circuits.write', of: 'circuit' },
   params: idParams,
-  body: circuitBody,
+  body: circuitChange,
+  answer: circuitSchema,
   handler: async ({ db, teamId, params, body }) => {
-    await db('circuits').where('id', params.id).update({ name: body.name, time_zone: body.timeZone, notes: body.notes })
+    const columns = { name: body.name, time_zone: body.timeZone, notes: body.notes }
+    await replaceSheet(db, 'circuits', params.id, body.basedOnVersion, columns)
     return (await readCircuits(db, teamId, params.id))[0]!
   },
 })

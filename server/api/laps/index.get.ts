@@ -1,9 +1,11 @@
+import { lapChoiceSchema } from '../../../shared/schemas/days'
 import type { LapChoice } from '../../../shared/schemas/days'
-import { idSchema, teamQuery } from '../../../shared/schemas/common'
+import { idSchema, listOf, teamQuery } from '../../../shared/schemas/common'
 import { defineApiHandler } from '../../utils/api'
+import { countsSql } from '../../utils/laps-of-outings'
 
-/** A lap that may be a best: nobody left it out, and its line did not lie in a gap. */
-const COUNTS = 'not l.excluded and not l.flags @> \'["gap_at_line"]\''
+/** A lap that may be a best. */
+const COUNTS = countsSql('l')
 
 interface Row {
   id: string
@@ -23,10 +25,11 @@ interface Row {
   is_best: boolean
 }
 
-/** The newest timed laps of a layout, for choosing two of them. */
 export default defineApiHandler({
+  about: 'The newest timed laps of a layout, at most 1000.',
   who: { action: 'read', of: 'team' },
   query: teamQuery.extend({ layoutId: idSchema }),
+  answer: listOf(lapChoiceSchema),
   handler: async ({ db, teamId, query }) => {
     const rows = await db('laps as l').join('outings as o', 'o.id', 'l.outing_id').join('track_days as d', 'd.id', 'o.day_id')
       .join('layouts as y', 'y.id', 'o.layout_id').join('circuits as c', 'c.id', 'y.circuit_id').join('cars as r', 'r.id', 'o.car_id')

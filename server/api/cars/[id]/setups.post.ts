@@ -1,13 +1,15 @@
-import { idParams } from '../../../../shared/schemas/common'
+import { idParams, numberedSchema } from '../../../../shared/schemas/common'
 import { setupBody } from '../../../../shared/schemas/setups'
 import { defineApiHandler } from '../../../utils/api'
 import { lockNumbers } from '../../../utils/db/transactions'
 
 export default defineApiHandler({
+  about: 'A new setup revision of the car.',
   who: { action: 'setups.write', of: 'car' },
   params: idParams,
   body: setupBody,
   status: 201,
+  answer: numberedSchema,
   handler: async ({ db, teamId, params, body, person }) => {
     await lockNumbers(db, params.id)
     const { last } = await db('setup_revisions').where('car_id', params.id).max('number as last').first() as { last: number | null }

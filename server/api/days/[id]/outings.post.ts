@@ -1,14 +1,16 @@
-import { idParams } from '../../../../shared/schemas/common'
+import { idParams, numberedSchema } from '../../../../shared/schemas/common'
 import { outingBody } from '../../../../shared/schemas/days'
 import { defineApiHandler } from '../../../utils/api'
 import { lockNumbers } from '../../../utils/db/transactions'
 import { outingColumns } from '../../../utils/outings'
 
 export default defineApiHandler({
+  about: 'A new outing of the day.',
   who: { action: 'outings.write', of: 'day' },
   params: idParams,
   body: outingBody,
   status: 201,
+  answer: numberedSchema,
   handler: async ({ db, teamId, params, body }) => {
     const day = await db('track_days').where('id', params.id).first<{ circuit_id: string }>('circuit_id')
     await lockNumbers(db, params.id)

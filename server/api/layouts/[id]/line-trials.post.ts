@@ -1,4 +1,4 @@
-import { lineTrialBody, type LineTrial } from '../../../../shared/schemas/circuits'
+import { lineTrialBody, lineTrialSchema, type LineTrial } from '../../../../shared/schemas/circuits'
 import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 import { cutLaps } from '../../../utils/laps/lap'
@@ -6,11 +6,12 @@ import type { DrivingDirection } from '../../../utils/laps/types'
 import { readPath } from '../../../utils/cut-work'
 import { notFound } from '../../../utils/problems'
 
-/** What lines would do to a log, worked out without storing anything. */
 export default defineApiHandler({
+  about: 'What lines would do to a log, worked out without storing anything.',
   who: { action: 'read', of: 'layout' },
   params: idParams,
   body: lineTrialBody,
+  answer: lineTrialSchema,
   handler: async ({ db, teamId, params, body }): Promise<LineTrial> => {
     const layout = await db('layouts').where('id', params.id).first<{ direction: DrivingDirection | null }>('direction')
     const log = await db('logs').where({ team_id: teamId, id: body.logId }).whereIn('status', ['no_lines', 'ready'])

@@ -1,15 +1,16 @@
-import { linesBody } from '../../../../shared/schemas/circuits'
+import { linesBody, savedLinesSchema } from '../../../../shared/schemas/circuits'
 import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 import { readLayout } from '../../../utils/circuits'
 import { requestCut } from '../../../utils/cutting'
 import { ProblemError } from '../../../utils/problems'
 
-/** All lines of a layout at once; every log driven on it is then cut again from its stored channels. */
 export default defineApiHandler({
+  about: 'Replaces all timing lines of a layout; every log driven on it is cut again from its stored channels.',
   who: { action: 'lines.write', of: 'layout' },
   params: idParams,
   body: linesBody,
+  answer: savedLinesSchema,
   handler: async ({ db, teamId, params, body }) => {
     const changed = await db('layouts').where({ id: params.id, lines_version: body.basedOnVersion })
       .update({ lines_version: body.basedOnVersion + 1, length_m: null })

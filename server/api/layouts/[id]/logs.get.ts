@@ -1,11 +1,13 @@
+import { layoutLogSchema } from '../../../../shared/schemas/circuits'
 import type { LayoutLog } from '../../../../shared/schemas/circuits'
-import { idParams } from '../../../../shared/schemas/common'
+import { idParams, listOf } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 
-/** Logs that were driven on the layout and have been read, the newest first. */
 export default defineApiHandler({
+  about: 'Logs that were driven on the layout and have been read, the newest first.',
   who: { action: 'read', of: 'layout' },
   params: idParams,
+  answer: listOf(layoutLogSchema),
   handler: async ({ db, params }) => {
     const items = await db('logs as g').join('log_parts as p', 'p.log_id', 'g.id').join('outings as o', 'o.id', 'p.outing_id')
       .join('track_days as d', 'd.id', 'o.day_id')

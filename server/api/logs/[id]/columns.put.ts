@@ -1,3 +1,4 @@
+import { logSchema } from '../../../../shared/schemas/days'
 import { idParams } from '../../../../shared/schemas/common'
 import { columnMapSchema, type LogPreview } from '../../../../shared/schemas/logs'
 import { defineApiHandler } from '../../../utils/api'
@@ -5,12 +6,13 @@ import { sendJob } from '../../../utils/jobs'
 import { readLog } from '../../../utils/logs'
 import { ProblemError } from '../../../utils/problems'
 
-/** What the columns are, as a person confirmed it; when it works, it is remembered for files with the same header. */
 export default defineApiHandler({
+  about: 'What the columns of a log are; it is then read. Remembered for files with the same header.',
   who: { action: 'logs.write', of: 'log' },
   params: idParams,
   body: columnMapSchema,
   status: 202,
+  answer: logSchema,
   handler: async ({ db, teamId, params, body }) => {
     const log = await db('logs').where('id', params.id).forUpdate()
       .first<{ status: string, preview: LogPreview | null }>('status', 'preview')
@@ -23,7 +25,7 @@ export default defineApiHandler({
       const message = 'The file has no such column.'
       throw new ProblemError(422, 'Not a column of this file', message, { errors: [{ path: `columns.${stranger}.source`, message }] })
     }
-    await db('logs').where('id', params.id).update({ column_map: JSON.stringify(body), status: 'queued', problem: null, remembered: false })
+    await db('logs').where('id', params.id).update({ column_map: JSON.stringify(body), status: 'queued', problem: null, remembered: false, restarted: false })
     await sendJob(db, 'log-read', { teamId, logId: params.id })
     return readLog(db, params.id)
   },

@@ -1,3 +1,4 @@
+import { traceSchema } from '../../../../shared/schemas/logs'
 import { idParams } from '../../../../shared/schemas/common'
 import { defineApiHandler } from '../../../utils/api'
 import { readPath } from '../../../utils/cut-work'
@@ -5,10 +6,11 @@ import { ProblemError } from '../../../utils/problems'
 
 const MOST_POINTS = 6000
 
-/** The driven path of a log for drawing: every n-th sample, at most some thousand of them. */
 export default defineApiHandler({
+  about: 'The driven path of a log for drawing, thinned to some thousand points.',
   who: { action: 'read', of: 'log' },
   params: idParams,
+  answer: traceSchema,
   handler: async ({ db, teamId, params }) => {
     const log = await db('logs').where('id', params.id)
       .first<{ status: string, gaps: { fromS: number, toS: number }[] }>('status', 'gaps')
@@ -25,7 +27,7 @@ export default defineApiHandler({
       timeS: thin(path.timeS, 3),
       latitudeDeg: thin(path.latitudeDeg, 7),
       longitudeDeg: thin(path.longitudeDeg, 7),
-      gaps: path.gaps,
+      gaps: [...path.gaps],
     }
   },
 })
