@@ -1,6 +1,6 @@
 // A ground of one's own for tests and measurements: cluster, folders, ports and a build, beside a running Lapwright.
-import { chmodSync, mkdirSync, rmSync } from 'node:fs'
-import { join } from 'node:path'
+import { chmodSync, existsSync, mkdirSync, readdirSync, rmSync } from 'node:fs'
+import { basename, join } from 'node:path'
 import { ensureBuild } from './build.mjs'
 import { completeSettings, writeEnvFile } from './env-file.mjs'
 import { makePlaces, placesIn, ROOT } from './places.mjs'
@@ -31,11 +31,23 @@ export function makeGround({ folder, places }) {
   chmodSync(join(ROOT, folder), 0o755)
 }
 
-/** Stop and remove what this run, or one that was killed, has left. */
-export async function clearGround({ places, outputDir, storage, envFile }) {
+/** Stop and remove what this run, or one that was killed, has left: its tests' own servers among it. */
+export async function clearGround({ folder, places, outputDir, storage, envFile }) {
+  for (const name of existsSync(join(ROOT, folder)) ? readdirSync(join(ROOT, folder)) : []) {
+    if (!name.startsWith(`${basename(places.home)}-own-`)) continue
+    const own = placesIn(join(folder, name))
+    await stopServers(own, outputDir)
+    await removeCluster(own.cluster)
+    rmSync(own.home, { recursive: true, force: true })
+  }
   await stopServers(places, outputDir)
   await removeCluster(places.cluster)
   for (const path of [storage, envFile]) rmSync(path, { recursive: true, force: true })
+}
+
+/** Remove the build of a ground that is not used again soon. */
+export function removeBuild({ outputDir, buildDir }) {
+  for (const folder of [outputDir, buildDir]) rmSync(join(ROOT, folder), { recursive: true, force: true })
 }
 
 /**
@@ -46,7 +58,8 @@ export async function serveGround({ places, buildDir, outputDir, storage, envFil
   const [web, worker, postgres] = await freePorts(3)
   const ports = { LAPWRIGHT_PORT: web, LAPWRIGHT_WORKER_PORT: worker, LAPWRIGHT_PG_PORT: postgres }
   mkdirSync(storage, { recursive: true })
-  const settings = completeSettings({}, ports, storage)
+  // As behind a proxy: a test that tries wrong passwords says from where, and does not use up the attempts of others.
+  const settings = completeSettings({ LAPWRIGHT_TRUST_PROXY: '1' }, ports, storage)
   await ensureServices(places, settings, { throwaway: true })
   const build = await ensureBuild({ buildDir, outputDir, logFolder: places.log })
   await ensureServers({ places, settings, outputDir, build })

@@ -1,4 +1,5 @@
 // Ports on the loopback interface.
+import { readdirSync, readFileSync, readlinkSync } from 'node:fs'
 import { createServer } from 'node:net'
 import { fail } from './say.mjs'
 
@@ -11,6 +12,32 @@ export function portIsFree(port) {
     server.once('error', () => resolve(false))
     server.listen({ port, host: HOST, exclusive: true }, () => server.close(() => resolve(true)))
   })
+}
+
+const LISTENING = '0A'
+
+/** Whether this very process, and no other, listens on a port: its sockets are compared with the kernel's table. */
+export function listensOn(pid, port) {
+  try {
+    const inodes = new Set(['tcp', 'tcp6'].flatMap(table => readFileSync(`/proc/${pid}/net/${table}`, 'utf8').split('\n'))
+      .map(line => line.trim().split(/\s+/))
+      .filter(([, local = '', , state]) => state === LISTENING && Number.parseInt(local.split(':')[1], 16) === port)
+      .map(fields => `socket:[${fields[9]}]`))
+    return inodes.size > 0 && readdirSync(`/proc/${pid}/fd`).some(fd => inodes.has(linkOf(`/proc/${pid}/fd/${fd}`)))
+  }
+  catch {
+    return false
+  }
+}
+
+function linkOf(path) {
+  try {
+    return readlinkSync(path)
+  }
+  catch {
+    // Closed in the meantime.
+    return ''
+  }
 }
 
 /** Some ports that are free now and different from each other. */

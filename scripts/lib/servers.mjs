@@ -15,6 +15,8 @@ export const SERVERS = [
   { role: 'worker', what: 'the worker', variable: 'LAPWRIGHT_WORKER_PORT' },
 ]
 const START_PATIENCE_MS = 120_000
+/** What is started, stopped and noted is the keeper of each process, which starts it again when it is lost. */
+const KEEPER = join(ROOT, 'scripts', 'keep.mjs')
 
 function pidFileOf(places, role) {
   return join(places.run, `${role}.json`)
@@ -87,7 +89,7 @@ export async function ensureServers({ places, settings, outputDir, build }) {
   const started = toStart.map((server) => {
     const log = join(places.log, `${server.role}.log`)
     const logStart = existsSync(log) ? statSync(log).size : 0
-    const pid = startDetached(process.execPath, [entry], { cwd: ROOT, env: plainEnv(server.env), log })
+    const pid = startDetached(process.execPath, [KEEPER, entry], { cwd: ROOT, env: plainEnv(server.env), log })
     if (!pid) fail(`${capital(server.what)} could not be started: ${process.execPath} did not run.`)
     writePidFile(pidFileOf(places, server.role), pid, { edition: server.edition, port: server.port })
     return { ...server, pid, log, logStart }

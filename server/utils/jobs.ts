@@ -1,4 +1,3 @@
-import process from 'node:process'
 import PgBoss from 'pg-boss'
 import { databaseUrl } from './db/pool'
 import type { Transaction } from './db/transactions'
@@ -35,7 +34,6 @@ async function startQueue(supervise: boolean): Promise<PgBoss> {
     migrate: false,
     schedule: false,
     supervise,
-    // How soon the job of a killed worker is found to have expired.
     maintenanceIntervalSeconds: 10,
   })
   boss.on('error', error => console.error('job queue:', error.message))
@@ -46,33 +44,19 @@ async function startQueue(supervise: boolean): Promise<PgBoss> {
 export async function stopJobQueue(): Promise<void> {
   const running = held.lapwrightJobs
   held.lapwrightJobs = undefined
-  if (running) await (await running).stop({ graceful: true, wait: true, timeout: 3000 })
+  if (running) await (await running).stop({ graceful: false })
 }
 
 interface Connection { query: (text: string, values: unknown[]) => Promise<{ rows: unknown[] }> }
 
+/** Lets the queue work inside a transaction of ours. */
+export async function through(db: Transaction): Promise<{ executeSql: Connection['query'] }> {
+  const connection = await db.client.acquireConnection() as Connection
+  return { executeSql: (text, values) => connection.query(text, values) }
+}
+
 /** Sends a job inside a transaction: with it the job comes into being, or with it the job is rolled back. */
 export async function sendJob<N extends JobName>(db: Transaction, name: N, data: Jobs[N]): Promise<void> {
   const boss = await jobQueue()
-  const connection = await db.client.acquireConnection() as Connection
-  await boss.send(name, data, { db: { executeSql: (text, values) => connection.query(text, values) } })
-}
-
-/** Takes jobs off the queue one at a time until the process ends. */
-export async function workOn<N extends JobName>(
-  name: N,
-  run: (data: Jobs[N]) => Promise<void>,
-): Promise<void> {
-  const boss = await jobQueue({ supervise: true })
-  const options = { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: 0.5 } as const
-  await boss.work<Jobs[N]>(name, options, async ([job]) => {
-    if (!job) return
-    try {
-      await run(job.data)
-    }
-    catch (error) {
-      console.error(`job ${name} ${job.id}, try ${job.retryCount + 1} (process ${process.pid}):`, error)
-      throw error
-    }
-  })
+  await boss.send(name, data, { db: await through(db) })
 }

@@ -29,6 +29,11 @@ export function shownStatus(db: Transaction, table: string): Raw {
   [table, table, table, table])
 }
 
+/** How many rows some problems concern; those that concern no single row are not of the rows. */
+export function countRows(problems: readonly LogProblem[]): number {
+  return problems.reduce((sum, { row, count }) => sum + (row === undefined ? 0 : count ?? 1), 0)
+}
+
 /** A log with its columns, channels, problems and the outing it was driven in. */
 export async function readLog(db: Transaction, id: string): Promise<Log> {
   const row = await db('logs').where('id', id).first<LogRow | undefined>('*', shownStatus(db, 'logs'))
@@ -52,6 +57,7 @@ export async function readLog(db: Transaction, id: string): Promise<Log> {
     sizeBytes: row.size_bytes,
     status: row.status,
     problem: row.problem,
+    rowProblems: countRows(row.problems),
     uploadedAt: row.uploaded_at.toISOString(),
     rows: row.row_count,
     samples: row.sample_count,
@@ -70,8 +76,8 @@ export async function readLog(db: Transaction, id: string): Promise<Log> {
 /** How far a log is, as the database knows it: what a page is told before the first live step arrives. */
 export async function readProgress(db: Transaction, id: string): Promise<LogProgress> {
   const row = await db('logs').where('id', id)
-    .first<{ status: LogStatus } | undefined>(shownStatus(db, 'logs'))
+    .first<{ status: LogStatus, restarted: boolean } | undefined>(shownStatus(db, 'logs'), 'restarted')
   if (!row) throw notFound('log')
   const over = !['uploading', 'queued', 'processing'].includes(row.status)
-  return { logId: id, status: row.status, step: null, fraction: over ? 1 : 0 }
+  return { logId: id, status: row.status, step: null, fraction: over ? 1 : 0, restarted: row.restarted }
 }

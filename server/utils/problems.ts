@@ -48,10 +48,21 @@ const CLASHES: Record<string, Clash> = {
   outings_team_id_car_id_setup_revision_id_fkey: { status: 422, title: 'No such setup', detail: 'This setup revision is not one of the car’s.', path: 'setupId' },
   outings_team_id_driver_id_fkey: { status: 422, title: 'No such driver', detail: 'This person is not a member of the team.', path: 'driverId' },
   outings_team_id_circuit_id_day_id_fkey: { status: 409, title: 'Circuit in use', detail: 'The day has outings at its circuit, so the circuit cannot be changed any more.', path: 'circuitId' },
+  log_parts_team_id_outing_id_fkey: { status: 409, title: 'Outing removed', detail: 'The outing was removed in the meantime. Nothing was kept; choose another outing.' },
   setup_revisions_team_id_car_id_based_on_id_fkey: { status: 422, title: 'No such revision', detail: 'The sheet this one is based on is not of the same car.', path: 'basedOnId' },
 }
 
-interface DatabaseError extends Error { code?: string, constraint?: string }
+const STILL_NAMED: Clash = { status: 409, title: 'Still in use', detail: 'Something else came to stand on this in the meantime. Read it again, and remove that first.' }
+const DAY_REMOVED: Clash = { status: 409, title: 'Day removed', detail: 'The day was removed in the meantime, so nothing can be put on it.' }
+
+interface DatabaseError extends Error { code?: string, constraint?: string, detail?: string }
+
+/** A foreign key speaks of both its ends: of a row that would name nothing, and of one that is still named. */
+function clashOf(constraint: string, stillNamed: boolean): Clash | undefined {
+  const ofDay = constraint === 'outings_team_id_circuit_id_day_id_fkey'
+  if (stillNamed && !ofDay) return STILL_NAMED
+  return ofDay && !stillNamed ? DAY_REMOVED : CLASHES[constraint]
+}
 
 /** Turns whatever was thrown into a problem, or null when it is a fault of ours. */
 export function problemOf(error: unknown): ProblemError | null {
@@ -60,8 +71,8 @@ export function problemOf(error: unknown): ProblemError | null {
     const row = error.row === undefined ? '' : ` (row ${error.row})`
     return new ProblemError(422, 'The log cannot be used', `${error.message}${row}`, { type: `urn:lapwright:log:${error.code}` })
   }
-  const { code, constraint } = error as DatabaseError
-  const clash = constraint ? CLASHES[constraint] : undefined
+  const { code, constraint, detail } = error as DatabaseError
+  const clash = constraint ? clashOf(constraint, detail?.includes('is still referenced') ?? false) : undefined
   if (clash && (code === '23505' || code === '23503')) {
     const errors = clash.path ? [{ path: clash.path, message: clash.detail }] : undefined
     return new ProblemError(clash.status, clash.title, clash.detail, { errors })
@@ -69,6 +80,15 @@ export function problemOf(error: unknown): ProblemError | null {
   if (code === '22021' || code === '22P05') {
     return new ProblemError(400, 'Not to be kept', 'A text holds a character that cannot be stored, such as NUL. Take it out.')
   }
+  if (isDatabaseAway(error as Error)) {
+    return new ProblemError(503, 'The database is away', 'The database does not answer at this moment; it is being started again, perhaps. What you typed is still here: try again in some seconds.')
+  }
   if (code === '42501') return new ProblemError(403, 'Not yours to do', 'Your role in this team does not allow this.')
   return null
+}
+
+/** Classes 08 and 57P of PostgreSQL's error codes, and what its driver and pool say when nobody answers. */
+export function isDatabaseAway({ code = '', name, message }: Error & { code?: string }): boolean {
+  return /^(08|57P)/.test(code) || ['ECONNREFUSED', 'ECONNRESET', 'EPIPE'].includes(code) || name === 'KnexTimeoutError'
+    || /^Connection terminated|^Unable to acquire a connection|Client has encountered a connection error/.test(message)
 }

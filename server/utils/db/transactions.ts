@@ -23,9 +23,14 @@ export function asPerson<T>(userId: string, run: (db: Transaction) => Promise<T>
 /** Runs queries of a job in the name of one team. */
 export function asTeam<T>(teamId: string, run: (db: Transaction) => Promise<T>): Promise<T> {
   return pool().transaction(async (db) => {
-    await db.raw('select set_config(\'lapwright.team_id\', ?, true)', [teamId])
+    await actAsTeam(db, teamId)
     return run(db)
   })
+}
+
+/** Lets the rest of a person's transaction write what belongs to the team's own bookkeeping, once it is allowed. */
+export async function actAsTeam(db: Transaction, teamId: string): Promise<void> {
+  await db.raw('select set_config(\'lapwright.team_id\', ?, true)', [teamId])
 }
 
 /** Holds the numbering of a parent's children until the transaction ends, so that two people never get one number. */
