@@ -15,7 +15,7 @@ export class ProblemError extends Error {
 interface ApiOptions {
   method?: 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE'
   body?: unknown
-  query?: Record<string, string | number | boolean | null | undefined>
+  query?: Record<string, string | number | boolean | null | undefined | string[]>
   signal?: AbortSignal
 }
 

@@ -10,6 +10,7 @@ import { problemOf } from './useApi'
  */
 export async function useComparison(lap: string, against: string) {
   const request = useRequestFetch()
+  const figures = useFigures()
   const fetchBoth = () => request<Comparison>('/api/compare', { query: { lap, against } })
   const comparison = shallowRef<Comparison | null>(null)
   const failed = ref(false)
@@ -18,7 +19,7 @@ export async function useComparison(lap: string, against: string) {
   const { data, error } = await useAsyncData<ComparisonSheet>(`compare:${lap}:${against}`, async () => {
     const answer = await fetchBoth()
     if (import.meta.client) comparison.value = markRaw(answer)
-    return sheetOf(answer)
+    return sheetOf(answer, figures)
   })
   if (error.value || !data.value) {
     const problem = problemOf(error.value ?? {})

@@ -1,14 +1,21 @@
 import type { z } from 'zod'
+import { rangeInUnits } from '#shared/range-words'
 import type { Problem } from '#shared/schemas/common'
 import { ProblemError, problemOf } from './useApi'
+import { useConflict, type StoredSheet } from './useConflict'
 
 interface FormOptions<S extends z.ZodType, V extends object> {
   /** Judges what was typed, before anything is sent. */
   schema: S
   /** What the fields hold at first. */
   initial: V
-  /** Gets what the schema made of the values. Throws a {@link ProblemError} to keep the form and say what is wrong. */
-  submit: (body: z.output<S>) => Promise<void>
+  /**
+   * Gets what the schema made of the values, and the version on which it is based. Throws a {@link ProblemError} to
+   * keep the form and say what is wrong.
+   */
+  submit: (body: z.output<S>, basedOnVersion: number) => Promise<void>
+  /** The sheet that is changed; none for a new one. */
+  stored?: StoredSheet<V>
   /** Keeps what was typed over a reload, under this name. Never for passwords. */
   draftKey?: string
   /** Ask before leaving with something typed (default: yes). With a draft, moving within the site needs no question. */
@@ -22,13 +29,21 @@ const LEAVE = 'What you typed on this sheet has not been saved. Leave it?'
  * On a mistake nothing typed is lost and the first bad field gets the focus.
  */
 export function useForm<S extends z.ZodType, V extends object>(options: FormOptions<S, V>) {
+  const told = useTold()
   const values = reactive(copy(options.initial)) as V
   const errors = reactive<Record<string, string>>({})
   const problem = ref<Problem | null>(null)
   const busy = ref(false)
   const saved = ref(snapshot(values))
   const dirty = computed(() => snapshot(values) !== saved.value)
-  const { restored, discardDraft, startOver } = useDraft(options.draftKey, values, dirty, options.initial)
+  const conflict = useConflict(options.stored, options.initial, values)
+  const { restored, discardDraft, startOver } = useDraft(options.draftKey, values, dirty, conflict)
+  // Theirs was taken: that is what the form starts from now.
+  watch(() => conflict.home, () => {
+    startOver()
+    rebase()
+    problem.value = null
+  })
 
   async function onSubmit(event?: Event) {
     if (busy.value) return
@@ -38,22 +53,20 @@ export function useForm<S extends z.ZodType, V extends object>(options: FormOpti
     clear(errors)
     const judged = options.schema.safeParse(toRaw(values))
     if (!judged.success) {
-      add(errors, judged.error.issues.map(issue => ({ path: issue.path.join('.'), message: issue.message })))
-      problem.value = {
-        type: 'about:blank', status: 422, title: 'Something on this sheet needs another look.', detail: '',
-        errors: Object.entries(errors).map(([path, message]) => ({ path, message })),
-      }
-      await focusFirst(form, errors)
-      return
+      add(errors, judged.error.issues.map(({ path, message }) => ({ path: path.join('.'), message: told(message) })))
+      problem.value = another(errors)
+      return focusFirst(form, errors)
     }
     busy.value = true
     try {
-      await options.submit(judged.data)
+      await options.submit(judged.data, conflict.basedOn)
+      conflict.settle()
       rebase()
       discardDraft()
     }
     catch (error) {
-      problem.value = error instanceof ProblemError ? error.problem : unexpected(error)
+      problem.value = inUnits(error instanceof ProblemError ? error.problem : unexpected(error), told)
+      await conflict.notice(problem.value)
       add(errors, problem.value.errors ?? [])
     }
     finally {
@@ -69,7 +82,24 @@ export function useForm<S extends z.ZodType, V extends object>(options: FormOpti
   }
 
   if (options.guard !== false) useLeaveGuard(dirty, busy, Boolean(options.draftKey))
-  return { values, errors, problem, busy, dirty, restored, startOver, rebase, onSubmit }
+  return { values, errors, problem, conflict, busy, dirty, restored, startOver, rebase, onSubmit }
+}
+
+function another(errors: Record<string, string>): Problem {
+  return {
+    type: 'about:blank', status: 422, title: 'Something on this sheet needs another look.', detail: '',
+    errors: Object.entries(errors).map(([path, message]) => ({ path, message })),
+  }
+}
+
+/** Tells a plausible range in the reader's units. */
+function useTold() {
+  const figures = useFigures()
+  return (message: string) => rangeInUnits(message, figures)
+}
+
+function inUnits(problem: Problem, told: (message: string) => string): Problem {
+  return { ...problem, errors: problem.errors?.map(({ path, message }) => ({ path, message: told(message) })) }
 }
 
 /** What a form starts with is plain data, perhaps handed on from reactive state that structuredClone refuses. */
@@ -103,8 +133,14 @@ async function focusFirst(form: HTMLFormElement | null, errors: Record<string, s
   fields.find(field => field.name && field.name in errors)?.focus()
 }
 
-/** Keeps what was typed in the tab's own store, and brings it back once the page is alive. */
-function useDraft<V extends object>(key: string | undefined, values: V, dirty: Ref<boolean>, initial: V) {
+/**
+ * Keeps what was typed in the tab's own store, and brings it back once the page is alive: with the version on which it
+ * was based, since the sheet may have been changed by somebody else meanwhile.
+ */
+function useDraft<V extends object>(
+  key: string | undefined, values: V, dirty: Ref<boolean>,
+  conflict: { basedOn: number, mine: object | null, home: { values: V, version: number } },
+) {
   const restored = ref(false)
   const name = `lapwright.draft.${key}`
 
@@ -115,20 +151,30 @@ function useDraft<V extends object>(key: string | undefined, values: V, dirty: R
 
   /** Throws the draft away and goes back to what the form was opened with. */
   function startOver() {
-    Object.assign(values, copy(initial))
+    Object.assign(values, copy(conflict.home.values))
+    conflict.basedOn = conflict.home.version
     discardDraft()
   }
 
   if (key) {
     onMounted(() => {
-      restored.value = fill(values, sessionStorage.getItem(name))
+      const kept = sessionStorage.getItem(name)
+      restored.value = fill(values, kept)
+      if (restored.value) conflict.basedOn = versionOf(kept) ?? conflict.basedOn
       watch(values, () => {
-        if (dirty.value) sessionStorage.setItem(name, JSON.stringify(values))
+        // What the fields show then is not what was typed.
+        if (conflict.mine) return
+        if (dirty.value) sessionStorage.setItem(name, JSON.stringify({ ...values, basedOnVersion: conflict.basedOn }))
         else discardDraft()
       }, { deep: true })
     })
   }
   return { restored, discardDraft, startOver }
+}
+
+function versionOf(stored: string | null): number | null {
+  const { basedOnVersion } = JSON.parse(stored ?? '{}') as { basedOnVersion?: unknown }
+  return typeof basedOnVersion === 'number' ? basedOnVersion : null
 }
 
 /** Puts a stored draft into the values; parts that do not fit the form of today are left out. */

@@ -1,5 +1,7 @@
 import type * as Leaflet from 'leaflet'
 import type { DraftLine } from '#shared/lines'
+import type { Box } from '#shared/labels'
+import { around, firstFree } from '#shared/labels'
 import { lineName } from '#shared/lines'
 import type { ShownLine } from './useLineMeasures'
 
@@ -11,6 +13,10 @@ interface Wishes {
   /** Broad enough for a finger. */
   touch: boolean
   mayEdit: boolean
+  /** Some points of the trace: names stand beside it where they can. */
+  trace: readonly [number, number][]
+  /** Writes a station, m, with its unit. */
+  distance: (atM: number) => string
   select: (key: string) => void
   change: (key: string, ends: Pick<DraftLine, 'a' | 'b'>) => void
 }
@@ -27,21 +33,23 @@ export function drawLines(
 ): Leaflet.LayerGroup {
   const group = L.layerGroup().addTo(map)
   const centre = middle(lines.flatMap(line => [line.a, line.b]))
+  const taken: Box[] = []
+  const trace = wishes.trace.map(at => around(map.latLngToContainerPoint(at), 3))
   for (const line of lines) {
     const ends = [place(line.a), place(line.b)]
     const isSelected = line.key === selected
     const stroke = { lineCap: 'butt', interactive: false, pmIgnore: true } as const
-    const glow = L.polyline(ends, { ...stroke, color: 'var(--mark)', weight: 22, opacity: isSelected ? 0.75 : 0 }).addTo(group)
+    const glow = L.polyline(ends, { ...stroke, color: 'var(--mark)', weight: 22, opacity: 0, className: isSelected ? 'line-glow' : '' }).addTo(group)
     const seen = L.polyline(ends, { ...stroke, color: 'var(--ink)', weight: line.ordinal === 0 ? 6 : 2.5 }).addTo(group)
     const grip = L.polyline(ends, { color: 'var(--ink)', weight: wishes.touch ? 44 : 22, opacity: 0, lineCap: 'butt', className: isSelected ? 'line-grip chosen' : 'line-grip', pmIgnore: false }).addTo(group)
     const follow = (to: Leaflet.LatLng[]) => {
       glow.setLatLngs(to)
       seen.setLatLngs(to)
     }
-    const name = `<b>${lineName(line.ordinal)}</b>${line.stationM === null ? '' : `<br>${Math.round(line.stationM)} m`}`
-    const at = within(map, outer(line, centre), side(line, centre))
+    const name = `<b>${lineName(line.ordinal)}</b>${line.stationM === null ? '' : `<br>${wishes.distance(line.stationM)}`}`
+    const beside = free(map, line, centre, taken, trace)
     L.marker(outer(line, centre), { icon: L.divIcon({ className: '', iconSize: [0, 0] }), interactive: false, keyboard: false, pmIgnore: true })
-      .bindTooltip(name, { permanent: true, direction: at, offset: offset(at), className: 'map-word' }).addTo(group)
+      .bindTooltip(name, { permanent: true, direction: beside.at, offset: beside.by, className: 'map-word' }).addTo(group)
     grip.on('click', () => wishes.select(line.key))
     if (isSelected && wishes.mayEdit) {
       const apartPx = map.latLngToLayerPoint(ends[0]!).distanceTo(map.latLngToLayerPoint(ends[1]!))
@@ -67,6 +75,32 @@ function awayDeg(from: DraftLine['a'], to: DraftLine['a']): number {
 /** The end of a line that lies on the outer side of the circuit: its name stands there, off the trace. */
 function outer(line: DraftLine, centre: DraftLine['a']): [number, number] {
   return place(awayDeg(centre, line.a) > awayDeg(centre, line.b) ? line.a : line.b)
+}
+
+/** How far up or down from its line a name is put where it has no room straight beside it, px. */
+const ASLANT_PX = 22
+const SIDES = ['top', 'bottom', 'left', 'right'] as const
+
+/** The side on which the name of a line covers no other name: the wanted one if it can be. */
+function free(
+  map: Leaflet.Map, line: DraftLine, centre: DraftLine['a'], taken: Box[], trace: readonly Box[],
+): { at: ReturnType<typeof side>, by: [number, number] } {
+  const wanted = within(map, outer(line, centre), side(line, centre))
+  const { x, y } = map.latLngToContainerPoint(outer(line, centre))
+  const [wide, high] = [lineName(line.ordinal).length * 7.4, 34]
+  const sides = [wanted, ...SIDES.filter(each => each !== wanted)].map(at => ({ at, by: offset(at) }))
+  const aslant = sides.filter(({ at }) => at === 'left' || at === 'right')
+    .flatMap(({ at, by: [dx] }) => [-ASLANT_PX, ASLANT_PX].map(dy => ({ at, by: [dx, dy] as [number, number] })))
+  const places = [...sides, ...aslant].map(({ at, by }) => {
+    const [dx, dy] = by
+    const left = x + dx + { top: -wide / 2, bottom: -wide / 2, left: -wide, right: 0 }[at]
+    const top = y + dy + { top: -high, bottom: 0, left: -high / 2, right: -high / 2 }[at]
+    return { at, by, box: { left, top, right: left + wide, bottom: top + high } }
+  })
+  const size = map.getSize()
+  const found = firstFree(places, taken, { left: 0, top: 0, right: size.x, bottom: size.y }, trace)
+  taken.push(found.box)
+  return found
 }
 
 /** A name that would reach over the edge of the map stands above its line, or towards the middle. */

@@ -1,4 +1,5 @@
 import { problemOf } from './useApi'
+import { FIRST_BOOK } from './useFirstBook'
 
 /**
  * What a page is about, read on the server or the browser before it shows. A missing thing becomes the page's own 404,
@@ -27,5 +28,10 @@ export async function usePageData<T>(url: string | (() => string)) {
     const status = problem.status === 400 ? 404 : problem.status || 503
     throw createError({ statusCode: status, message: problem.detail, fatal: true })
   }
-  return { data: answer.data as Ref<T>, refresh: answer.refresh }
+  /** What has changed here may be the next of the first steps, which a line at the head of the sheet follows. */
+  const refresh = async () => {
+    await answer.refresh()
+    void refreshNuxtData(FIRST_BOOK)
+  }
+  return { data: answer.data as Ref<T>, refresh }
 }

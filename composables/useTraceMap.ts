@@ -49,10 +49,11 @@ function pieces(raw: LogTrace, place: (i: number) => LatLng): LatLng[][] {
 /**
  * Graph paper under the map: squares of a round length, redrawn as the map moves.
  * @param planeNow the plane in which the squares are square
+ * @param unitM length of the unit in which the sides are to be round, metres
  * @param told is told the side of the squares, metres; 0 where there are none
  */
 export function drawGraticule(
-  L: L, map: Leaflet.Map, planeNow: () => Plane, told: (sideM: number) => void,
+  L: L, map: Leaflet.Map, planeNow: () => Plane, unitM: number, told: (sideM: number) => void,
 ): Leaflet.LayerGroup {
   const pane = map.getPane('graticule') ?? map.createPane('graticule')
   pane.style.zIndex = '150'
@@ -70,7 +71,7 @@ export function drawGraticule(
     }
     const low = pointToPlane(plane, { latitudeDeg: bounds.getSouth(), longitudeDeg: bounds.getWest() })
     const high = pointToPlane(plane, { latitudeDeg: bounds.getNorth(), longitudeDeg: bounds.getEast() })
-    const sideM = roundLengthM(Math.max(10, (high.xM - low.xM) / 7))
+    const sideM = roundLengthM(Math.max(10, (high.xM - low.xM) / 7) / unitM) * unitM
     const line = (x1: number, y1: number, x2: number, y2: number) => {
       const ends = [toDegrees(plane, x1, y1), toDegrees(plane, x2, y2)]
         .map(({ latitudeDeg, longitudeDeg }): LatLng => [latitudeDeg, longitudeDeg])

@@ -14,19 +14,25 @@ export interface Client {
   /** Uploads a file as the one part of a form. */
   upload: <T = unknown>(path: string, fileName: string, bytes: BlobPart) => Promise<Answer<T>>
   cookie: () => string
+  /** The headers that tell who asks, for requests that are sent another way. */
+  credentials: () => Record<string, string>
 }
 
 /**
- * A client of /api that keeps its session cookie, as a browser would.
+ * A client of /api that keeps its session cookie, as a browser would, or sends a token, as a program does.
  * @param baseUrl the address of the server, without a slash at its end
  */
-export function makeClient(baseUrl: string, cookie = ''): Client {
+export function makeClient(baseUrl: string, cookie = '', token = ''): Client {
   let held = cookie
+  const credentials = () => ({
+    ...(held ? { cookie: held } : {}),
+    ...(token ? { authorization: `Bearer ${token}` } : {}),
+  })
   const ask = async <T>(method: string, path: string, init: RequestInit): Promise<Answer<T>> => {
     // After seconds of computing, fetch has not yet noticed which idle connections the server closed in the meantime.
     await new Promise(resolve => setTimeout(resolve, 5))
     const headers = new Headers(init.headers)
-    if (held) headers.set('cookie', held)
+    for (const [name, value] of Object.entries(credentials())) headers.set(name, value)
     const response = await fetch(baseUrl + path, { ...init, method, headers, redirect: 'manual' })
     for (const set of response.headers.getSetCookie()) held = set.split(';')[0]!
     const text = await response.text()
@@ -50,6 +56,7 @@ export function makeClient(baseUrl: string, cookie = ''): Client {
       return ask<T>('POST', path, { body: form })
     },
     cookie: () => held,
+    credentials,
   }
 }
 

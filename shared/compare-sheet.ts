@@ -3,7 +3,7 @@ import { findingOf, lapKeys } from './compare-words'
 import { extentOf, widestApart } from './compare-series'
 import { shownDifferenceS } from './laps'
 import type { ComparedLap, Comparison } from './schemas/compare'
-import { formatDifference, formatG, formatKmh } from './utils/format'
+import type { Figures } from './figures'
 
 /** A lap without its traces. */
 export type LapFacts = Omit<ComparedLap, 'speed' | 'longitudinal' | 'lateral'>
@@ -36,7 +36,7 @@ export interface ComparisonSheet {
 const OUTLINE_POINTS = 600
 
 /** Everything a comparison says in words and small figures. O(n). */
-export function sheetOf(comparison: Comparison): ComparisonSheet {
+export function sheetOf(comparison: Comparison, figures: Figures): ComparisonSheet {
   const { lap, against, stationM, pathM } = comparison
   const stride = Math.max(1, Math.floor(stationM.length / OUTLINE_POINTS))
   const thin = (values: readonly number[]) => values
@@ -48,8 +48,8 @@ export function sheetOf(comparison: Comparison): ComparisonSheet {
     keys: lapKeys(lap, against),
     lengthM: stationM.at(-1) ?? 0,
     totalS: shownDifferenceS(lap.timeS, against.timeS),
-    finding: findingOf(comparison),
-    titles: titlesOf(comparison),
+    finding: findingOf(comparison, figures),
+    titles: titlesOf(comparison, figures),
     startM: widestApart(stationM, lap.speed, against.speed)?.atM ?? 0,
     path: { stationM: thin(stationM), x: thin(pathM.x), y: thin(pathM.y) },
     sectorLinesM: comparison.sectorLinesM,
@@ -63,39 +63,40 @@ function factsOf(lap: ComparedLap): LapFacts {
   return facts
 }
 
-function titlesOf(comparison: Comparison): TraceTitles {
+function titlesOf(comparison: Comparison, figures: Figures): TraceTitles {
   return {
-    speed: speedTitle(comparison),
-    difference: differenceTitle(comparison),
-    longitudinal: longitudinalTitle(comparison),
-    lateral: lateralTitle(comparison),
+    speed: speedTitle(comparison, figures),
+    difference: differenceTitle(comparison, figures),
+    longitudinal: longitudinalTitle(comparison, figures),
+    lateral: lateralTitle(comparison, figures),
   }
 }
 
 const NOTHING = 'not in both logs'
 
-function speedTitle({ stationM, lap, against }: Comparison): string {
+function speedTitle({ stationM, lap, against }: Comparison, figures: Figures): string {
   const widest = widestApart(stationM, lap.speed, against.speed)
   if (!widest) return NOTHING
-  return `most apart at ${Math.round(widest.atM)} m, ${formatKmh(Math.abs(widest.by))} km/h ${widest.by < 0 ? 'slower' : 'faster'}`
+  return `most apart at ${figures.distance(widest.atM)}, ${figures.speed(Math.abs(widest.by))} ${widest.by < 0 ? 'slower' : 'faster'}`
 }
 
-function differenceTitle({ stationM, differenceS, lap, against }: Comparison): string {
+function differenceTitle({ stationM, differenceS, lap, against }: Comparison, figures: Figures): string {
   const furthest = widestApart(stationM, differenceS, differenceS.map(() => 0))
   if (!furthest) return NOTHING
-  return `${formatDifference(furthest.by, 2)} at ${Math.round(furthest.atM)} m, ${formatDifference(shownDifferenceS(lap.timeS, against.timeS))} at the line`
+  const atLine = figures.difference(shownDifferenceS(lap.timeS, against.timeS))
+  return `${figures.difference(furthest.by, 2)} at ${figures.distance(furthest.atM)}, ${atLine} at the line`
 }
 
-function longitudinalTitle({ lap, against }: Comparison): string {
+function longitudinalTitle({ lap, against }: Comparison, figures: Figures): string {
   const mine = extentOf(lap.longitudinal)
   const other = extentOf(against.longitudinal)
   if (!mine || !other) return NOTHING
-  return `hardest braking ${formatG(-mine.low)} against ${formatG(-other.low)}`
+  return `hardest braking ${figures.g(-mine.low)} against ${figures.g(-other.low)}`
 }
 
-function lateralTitle({ lap, against }: Comparison): string {
+function lateralTitle({ lap, against }: Comparison, figures: Figures): string {
   const mine = extentOf(lap.lateral)
   const other = extentOf(against.lateral)
   if (!mine || !other) return NOTHING
-  return `most to the left ${formatG(mine.high)} against ${formatG(other.high)}, to the right ${formatG(-mine.low)} against ${formatG(-other.low)}`
+  return `most to the left ${figures.g(mine.high)} against ${figures.g(other.high)}, to the right ${figures.g(-mine.low)} against ${figures.g(-other.low)}`
 }

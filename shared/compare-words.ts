@@ -1,7 +1,8 @@
 import { steepestStretch } from './compare-series'
 import { shownDifferenceS } from './laps'
 import type { ComparedLap, Comparison } from './schemas/compare'
-import { asSentence, formatDate, formatDifference, formatLapTime, formatNumber, numberInWords } from './utils/format'
+import type { Figures } from './figures'
+import { asSentence, numberInWords } from './utils/format'
 
 /** A part of a sentence: running text, a figure, or the part on which the highlighter lies. */
 export interface Word { text: string, as: 'text' | 'figure' | 'mark' }
@@ -30,14 +31,14 @@ const text = (words: string): Word => ({ text: words, as: 'text' })
 const figure = (words: string): Word => ({ text: words, as: 'figure' })
 const mark = (words: string): Word => ({ text: words, as: 'mark' })
 
-const seconds = (valueS: number) => formatNumber(Math.abs(valueS), 3)
+const seconds = (valueS: number, figures: Figures) => figures.number(Math.abs(valueS), 3)
 
 /** What to call the other lap beside the first: only what tells them apart. */
-export function nameAgainst(lap: ComparedLap, against: ComparedLap): string {
+export function nameAgainst(lap: ComparedLap, against: ComparedLap, figures: Pick<Figures, 'date'>): string {
   const name = `lap ${against.number}`
   if (against.outing.id === lap.outing.id) return name
   if (against.day.id === lap.day.id) return `${name} of outing ${against.outing.number}`
-  return `${name} of outing ${against.outing.number} on ${formatDate(against.day.date)}`
+  return `${name} of outing ${against.outing.number} on ${figures.date(against.day.date)}`
 }
 
 /** Keys of the two laps for tables and traces; with the outing where both have the same number. */
@@ -70,51 +71,53 @@ function shareWords(share: number): string {
 }
 
 /** Where most of a difference arose, from the sectors; null when they do not tell. */
-function whereBySector(rows: SectorRow[], totalS: number): Word[] | null {
+function whereBySector(rows: SectorRow[], totalS: number, figures: Figures): Word[] | null {
   if (rows.length < 2 || rows.some(row => row.differenceS === null)) return null
   const sign = totalS < 0 ? -1 : 1
   const most = rows.reduce((best, row) => row.differenceS! * sign > best.differenceS! * sign ? row : best)
   const share = most.differenceS! / totalS
   const what = totalS > 0 ? 'lost' : 'gained'
   if (share > 1.05) {
-    return [mark(`${asSentence(most.name)} alone ${totalS > 0 ? 'cost' : 'gained'} ${seconds(most.differenceS!)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places lost some of it again.')]
+    return [mark(`${asSentence(most.name)} alone ${totalS > 0 ? 'cost' : 'gained'} ${seconds(most.differenceS!, figures)} s`), text(totalS > 0 ? '; other places gave some of it back.' : '; other places lost some of it again.')]
   }
   if (share < 0.45) return [text(`The time was ${what} in several sectors, nowhere most of it.`)]
   return [mark(`${shareWords(share)} of it was ${what} in ${most.name}`), text('.')]
 }
 
 /** Where most of a difference arose on a layout without sector lines: in an eighth of the lap. */
-function whereByStation(comparison: Comparison, totalS: number): Word[] | null {
+function whereByStation(comparison: Comparison, totalS: number, figures: Figures): Word[] | null {
   const lengthM = comparison.stationM.at(-1) ?? 0
   const found = steepestStretch(comparison.stationM, comparison.differenceS, lengthM / 8, totalS < 0 ? -1 : 1)
   if (!found) return null
-  return [text(totalS > 0 ? 'Most was lost ' : 'Most was gained '), mark(`between ${Math.round(found.fromM)} m and ${Math.round(found.toM)} m`), text(': '), figure(`${seconds(found.changeS)} s`), text('.')]
+  return [text(totalS > 0 ? 'Most was lost ' : 'Most was gained '), mark(`between ${figures.distance(found.fromM)} and ${figures.distance(found.toM)}`), text(': '), figure(`${seconds(found.changeS, figures)} s`), text('.')]
 }
 
 /**
  * The sentences that open a comparison. They say what was measured and where; never why, because two laps cannot tell.
  */
-export function findingOf(comparison: Comparison): Finding {
+export function findingOf(comparison: Comparison, figures: Figures): Finding {
   const { lap, against } = comparison
   const totalS = shownDifferenceS(lap.timeS, against.timeS)
   const rows = sectorRows(comparison)
-  const lead = [text(`Lap ${lap.number} `), figure(`(${formatLapTime(lap.timeS)})`)]
+  const lead = [text(`Lap ${lap.number} `), figure(`(${figures.lapTime(lap.timeS)})`)]
   if (totalS === 0) {
-    lead.push(text(` and ${nameAgainst(lap, against)} took the same time, to the millisecond.`))
+    lead.push(text(` and ${nameAgainst(lap, against, figures)} took the same time, to the millisecond.`))
   }
   else {
-    lead.push(text(' is '), figure(`${seconds(totalS)} s`), text(` ${totalS > 0 ? 'slower' : 'faster'} than ${nameAgainst(lap, against)}. `))
-    lead.push(...(whereBySector(rows, totalS) ?? whereByStation(comparison, totalS) ?? []))
+    lead.push(text(' is '), figure(`${seconds(totalS, figures)} s`), text(` ${totalS > 0 ? 'slower' : 'faster'} than ${nameAgainst(lap, against, figures)}. `))
+    lead.push(...(whereBySector(rows, totalS, figures) ?? whereByStation(comparison, totalS, figures) ?? []))
   }
-  return { lead, under: [...sectorWords(rows), ...doubtWords(lap), ...doubtWords(against), ...carWords(comparison)] }
+  const doubts = [...doubtWords(lap), ...doubtWords(against)]
+  return { lead, under: [...sectorWords(rows, figures), ...doubts, ...carWords(comparison)] }
 }
 
-function sectorWords(rows: SectorRow[]): Word[] {
+function sectorWords(rows: SectorRow[], figures: Figures): Word[] {
   const known = rows.filter(row => row.differenceS !== null)
   if (!known.length) return []
   const words: Word[] = []
   for (const [i, row] of known.entries()) {
-    words.push(text(`${i ? ', ' : ''}${i ? row.name : asSentence(row.name)} `), figure(formatDifference(row.differenceS!)))
+    const name = i ? `, ${row.name} ` : `${asSentence(row.name)} `
+    words.push(text(name), figure(figures.difference(row.differenceS!)))
   }
   return [...words, text(' s. ')]
 }

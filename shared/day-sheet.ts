@@ -1,6 +1,7 @@
 import { lapFigures, shownDifferenceS, type LapFigures } from './laps'
 import type { Day, Lap, OutingSummary } from './schemas/days'
-import { asSentence, countInWords, formatLapTime, formatNumber, numberInWords } from './utils/format'
+import type { Figures } from './figures'
+import { asSentence, countInWords, numberInWords } from './utils/format'
 
 export type Weather = 'dry' | 'wet'
 
@@ -46,7 +47,9 @@ export function dayGroups(outings: readonly OutingSummary[]): DayGroup[] {
 export type Sentence = (string | { fig: string })[]
 
 /** What the day's sheet opens with: its finding, worked out from the laps. */
-export function daySentence(day: Pick<Day, 'outings'>, groups: readonly DayGroup[]): Sentence {
+export function daySentence(
+  day: Pick<Day, 'outings'>, groups: readonly DayGroup[], figures: Figures,
+): Sentence {
   const outings = countInWords(day.outings.length, 'outing')
   if (day.outings.length === 0) return ['No outing on this sheet yet.']
   const counted = groups.reduce((sum, group) => sum + group.figures.counted.length, 0)
@@ -56,9 +59,9 @@ export function daySentence(day: Pick<Day, 'outings'>, groups: readonly DayGroup
   const best = fastest.figures.best!
   const where = groups.length > 1 ? ` in the ${fastest.car.name} on ${fastest.layout.name}` : ''
   return [
-    `${asSentence(outings)}, `, { fig: String(counted) }, ` ${counted === 1 ? 'lap counts' : 'laps count'}. Best `,
-    { fig: formatLapTime(best.timeS) }, `${where}, lap ${best.number} of outing ${best.outing.number}`,
-    ...runnerUp(fastest, best), '.',
+    `${asSentence(outings)}, `, { fig: figures.number(counted) }, ` ${counted === 1 ? 'lap counts' : 'laps count'}. Best `,
+    { fig: figures.lapTime(best.timeS) }, `${where}, lap ${best.number} of outing ${best.outing.number}`,
+    ...runnerUp(fastest, best, figures), '.',
   ]
 }
 
@@ -72,18 +75,20 @@ function waitingWords(outings: readonly OutingSummary[]): string {
 }
 
 /** The other outing that came nearest to the best lap, and whether it ran another setup. */
-function runnerUp(group: DayGroup, best: DayLap): Sentence {
+function runnerUp(group: DayGroup, best: DayLap, figures: Figures): Sentence {
   const others = group.figures.counted.filter(lap => lap.outing.id !== best.outing.id)
   const [next] = others.sort((a, b) => a.timeS - b.timeS)
   if (!next) return []
   const behindS = shownDifferenceS(next.timeS, best.timeS)
   const setup = next.outing.setup.id === best.outing.setup.id ? '' : `, on revision ${next.outing.setup.number} instead of ${best.outing.setup.number}`
   if (behindS === 0) return [`; outing ${next.outing.number} did the same${setup}`]
-  return [`; outing ${next.outing.number} came within `, { fig: `${formatNumber(behindS, 3)} s` }, ` of it${setup}`]
+  return [`; outing ${next.outing.number} came within `, { fig: `${figures.number(behindS, 3)} s` }, ` of it${setup}`]
 }
 
 /** What an outing's page opens with. */
-export function outingSentence(outing: Pick<OutingSummary, 'number' | 'laps' | 'logs'>): Sentence {
+export function outingSentence(
+  outing: Pick<OutingSummary, 'number' | 'laps' | 'logs'>, figures: Figures,
+): Sentence {
   const { counted, best, sumOfBestS } = lapFigures([outing.laps])
   const timed = outing.laps.filter(lap => lap.kind === 'timed').length
   if (!best) {
@@ -93,9 +98,9 @@ export function outingSentence(outing: Pick<OutingSummary, 'number' | 'laps' | '
   const laps = counted.length === timed ? `all of its ${countInWords(timed, 'lap')} count` : `${numberInWords(counted.length)} of its ${countInWords(timed, 'timed lap')} ${counted.length === 1 ? 'counts' : 'count'}`
   const left = sumOfBestS === null ? 0 : shownDifferenceS(best.timeS, sumOfBestS)
   return [
-    `Outing ${outing.number} did `, { fig: formatLapTime(best.timeS) }, ` on lap ${best.number}; `,
+    `Outing ${outing.number} did `, { fig: figures.lapTime(best.timeS) }, ` on lap ${best.number}; `,
     timed === 1 ? 'it is the only timed lap' : laps,
-    ...(left > 0 ? ['. Its best sectors together are ', { fig: `${formatNumber(left, 3)} s` }, ' faster'] : []), '.',
+    ...(left > 0 ? ['. Its best sectors together are ', { fig: `${figures.number(left, 3)} s` }, ' faster'] : []), '.',
   ]
 }
 

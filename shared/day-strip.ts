@@ -1,6 +1,6 @@
 import type { StripScale } from './lap-axis'
 import { lapStandings, leftOutReason, type LapFigure, type LapStanding } from './laps'
-import { formatLapTime } from './utils/format'
+import type { Figures } from './figures'
 
 /** One lap on the strip of its outing. Laps run downwards in driving order. */
 export interface StripPoint {
@@ -91,9 +91,11 @@ export function markLabels(marks: readonly StripMark[], scale: StripScale): (Str
 }
 
 /** Labels of the axis' ticks, kept within the sheet at its ends. */
-export function tickLabels(ticksS: readonly number[], majorS: number, scale: StripScale): StripLabel[] {
+export function tickLabels(
+  ticksS: readonly number[], majorS: number, scale: StripScale, figures: Figures,
+): StripLabel[] {
   return ticksS.map((tickS) => {
-    const text = formatLapTime(tickS, majorS < 1 ? 1 : 0)
+    const text = figures.lapTime(tickS, majorS < 1 ? 1 : 0)
     const [x, half] = [scale.x(tickS), text.length * LETTER / 2]
     const anchor = x - half < 0 ? 'start' : x + half > scale.width ? 'end' : 'middle'
     return { x: tenth(anchor === 'start' ? 0 : anchor === 'end' ? scale.width : x), y: 72, anchor, text }
@@ -101,12 +103,12 @@ export function tickLabels(ticksS: readonly number[], majorS: number, scale: Str
 }
 
 /** The strip in words, for those who cannot see it. */
-export function stripSentence(outingNumber: number, laps: readonly LapFigure[]): string {
+export function stripSentence(outingNumber: number, laps: readonly LapFigure[], figures: Figures): string {
   const standings = lapStandings(laps)
   const words = laps.map((lap, i) => {
     const standing = standings[i]!
     const why = standing === 'counted' ? '' : ` (${leftOutReason(lap, standing) || `${standing} lap`})`
-    return `${formatLapTime(lap.timeS)}${why}`
+    return `${figures.lapTime(lap.timeS)}${why}`
   })
   return `Laps of outing ${outingNumber} in driving order: ${words.join(', ')}.`
 }

@@ -23,8 +23,13 @@ export interface LapTableData {
   best: Lap | null
 }
 
-/** The laps of one outing as its page lists them. Bests are of counted laps only: an excluded one marks nothing. */
-export function lapTable(laps: readonly Lap[]): LapTableData {
+/**
+ * The laps of one outing as its page lists them. Bests are of counted laps only: an excluded one marks nothing.
+ * @param logs those of the outing; with laps of more than one of them, each lap says from which it is
+ */
+export function lapTable(laps: readonly Lap[], logs: readonly { id: string, fileName: string }[] = []): LapTableData {
+  const several = new Set(laps.map(lap => lap.logId)).size > 1
+  const fileOf = (lap: Lap) => several ? logs.find(log => log.id === lap.logId)?.fileName ?? '' : ''
   const standings = lapStandings(laps)
   const counted = laps.filter((_, i) => standings[i] === 'counted')
   const best = bestLap(counted)
@@ -48,14 +53,15 @@ export function lapTable(laps: readonly Lap[]): LapTableData {
           const timeS = shown[k] ?? null
           return { timeS, isBest: standing === 'counted' && timeS !== null && timeS === bestSectorsS[k] }
         }),
-        notes: notes(lap, standing),
+        notes: notes(lap, standing, fileOf(lap)),
       }
     }),
   }
 }
 
-function notes(lap: Lap, standing: LapStanding): string[] {
+function notes(lap: Lap, standing: LapStanding, file: string): string[] {
   return [
+    file && `from ${file}`,
     leftOutReason(lap, standing),
     lap.flags.includes('gap_at_line') && standing !== 'gap' ? 'no fix at a line' : '',
     lap.flags.includes('missed_sector') ? 'missed a sector line' : '',

@@ -4,14 +4,14 @@ import type { Lap } from './schemas/days'
 export const SLOW_SHARE = 1.07
 
 /** What a lap is to the figures of its outing. Only `counted` laps enter them; nothing is hidden for that. */
-export type LapStanding = 'counted' | 'excluded' | 'gap' | 'slow' | 'out' | 'in'
+export type LapStanding = 'counted' | 'excluded' | 'repeated' | 'gap' | 'slow' | 'out' | 'in'
 
 /** The part of a lap that the figures need. */
 export type LapFigure = Pick<Lap, 'kind' | 'timeS' | 'sectorsS' | 'flags' | 'excluded' | 'excludedReason'>
 
 /**
- * What each lap of ONE outing is to its figures: counted = timed, not excluded by a person, no gap over a line, and
- * within 107 % of the best lap of the outing for which the first three hold. Cost O(n).
+ * What each lap of ONE outing is to its figures: counted = timed, not excluded by a person, not in a log added earlier,
+ * no gap over a line, and within 107 % of the best lap of the outing for which the others hold. Cost O(n).
  * @param laps laps of one outing, in any order
  * @returns one standing a lap, in the same order
  */
@@ -19,6 +19,7 @@ export function lapStandings(laps: readonly LapFigure[]): LapStanding[] {
   const first = laps.map((lap): LapStanding => {
     if (lap.kind !== 'timed') return lap.kind
     if (lap.excluded) return 'excluded'
+    if (lap.flags.includes('repeated')) return 'repeated'
     return lap.flags.includes('gap_at_line') ? 'gap' : 'counted'
   })
   const bestS = Math.min(...laps.filter((_, i) => first[i] === 'counted').map(lap => lap.timeS))
@@ -34,6 +35,7 @@ export function countedLaps<T extends LapFigure>(laps: readonly T[]): T[] {
 /** Why a timed lap does not count, in a few words; empty for counted, out and in laps. */
 export function leftOutReason(lap: LapFigure, standing: LapStanding): string {
   if (standing === 'excluded') return lap.excludedReason || 'excluded'
+  if (standing === 'repeated') return 'the log added first counts'
   if (standing === 'gap') return 'no fix at a line'
   return standing === 'slow' ? 'over 107 % of the best' : ''
 }

@@ -1,4 +1,4 @@
-import type { LogProgress } from './schemas/days'
+import type { Lap, LogProgress, LogSummary } from './schemas/days'
 import { LOG_STEPS, type LogStatus, type LogStep } from './schemas/logs'
 
 /** What a log is doing, for lists. */
@@ -45,10 +45,28 @@ export function withNews(before: LogProgress | undefined, news: LogProgress): Lo
 }
 
 /** One line about a log on its way: the step in words and how far the whole is. */
-export function progressWords(progress: Pick<LogProgress, 'status' | 'step' | 'fraction'>): string {
+export function progressWords(progress: Pick<LogProgress, 'status' | 'step' | 'fraction' | 'restarted'>): string {
+  if (progress.status === 'queued' && progress.restarted) return 'The worker was lost; the reading begins again by itself'
   if (progress.status !== 'processing') return STATUS_WORDS[progress.status]
   const step = LOG_STEPS.find(known => known === progress.step)
   return `${step ? STEP_WORDS[step] : 'Being read'}, ${Math.round(progress.fraction * 100)} %`
+}
+
+/** That rows of a log had to be left out or mended, for lists; empty where none had. */
+export function rowProblemWords({ rowProblems: count }: Pick<LogSummary, 'rowProblems'>, written: string): string {
+  if (count === 0) return ''
+  return count === 1 ? 'Something was wrong in 1 row.' : `Something was wrong in ${written} rows.`
+}
+
+/** Why laps of some logs of an outing do not count; empty where each lap is in one log alone. */
+export function overlapWords(laps: readonly Lap[], logs: readonly Pick<LogSummary, 'id' | 'fileName'>[]): string {
+  const repeated = laps.filter(lap => lap.flags.includes('repeated'))
+  const files = logs.filter(log => repeated.some(lap => lap.logId === log.id)).map(log => log.fileName)
+  if (files.length === 0) return ''
+  const those = repeated.length === 1 ? '1 lap' : `${repeated.length} laps`
+  return `${those} of ${files.join(' and ')} ${repeated.length === 1 ? 'does' : 'do'} not count: a log of this outing that was `
+    + 'added earlier has the same minutes, or one of the two does not tell the time of day. '
+    + 'If it was another drive, give it an outing of its own.'
 }
 
 /** Rows a problem concerns, as it is written above it; empty where no row is to blame. */

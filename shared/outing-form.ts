@@ -1,8 +1,7 @@
 import { z } from 'zod'
-import { localToInstant } from './local-time'
+import { clockTime, localToInstant } from './local-time'
 import { conditionsSchema, outingBody, type Day, type Outing, type OutingBody, type OutingSummary } from './schemas/days'
 import type { Car } from './schemas/setups'
-import { formatTime } from './utils/format'
 
 /** Pressures are shown in bar, so what is wrong with one is said in bar. */
 const PRESSURE = 'between 0.5 and 5 bar'
@@ -20,9 +19,15 @@ export const outingFormSchema = outingBody.extend({
 })
 export type OutingForm = z.infer<typeof outingFormSchema>
 
-/** The body for the server, with an instant. */
-export function outingFormToBody(form: OutingForm, date: string, timeZone: string): OutingBody {
-  return { ...form, startedAt: form.startedAt ? localToInstant(date, form.startedAt, timeZone) : null }
+/**
+ * The body for the server, with an instant.
+ * @param known the start as it is stored: kept when the form still shows it, since a time that comes twice in the night
+ *   of the change from summer time may be its second passage
+ */
+export function outingFormToBody(
+  form: OutingForm, date: string, timeZone: string, known: string | null = null,
+): OutingBody {
+  return { ...form, startedAt: form.startedAt ? localToInstant(date, form.startedAt, timeZone, known) : null }
 }
 
 /** The form of an outing that exists. */
@@ -32,7 +37,7 @@ export function outingToForm(outing: Outing): OutingForm {
     carId: outing.car.id,
     setupId: outing.setup.id,
     driverId: outing.driver.id,
-    startedAt: outing.startedAt ? formatTime(outing.startedAt, outing.day.timeZone) : '',
+    startedAt: clockTime(outing.startedAt, outing.day.timeZone) ?? '',
     fuelStartL: outing.fuelStartL,
     passenger: outing.passenger,
     conditions: { ...outing.conditions },

@@ -18,9 +18,11 @@ export interface Outline {
  * Fit a path into a picture: same scale both ways, north up.
  * @param pathM metres east and north, at least two points
  * @param width of the picture; its height follows, at most `maxHeight`
+ * @param unitM length of the unit in which the scale bar is to be round, metres
  */
 export function fitOutline(
   pathM: { x: readonly number[], y: readonly number[] }, width: number, maxHeight: number, padding: number,
+  unitM = 1,
 ): Outline {
   let [left, right, bottom, top] = [Infinity, -Infinity, Infinity, -Infinity]
   for (const [i, x] of pathM.x.entries()) {
@@ -48,7 +50,7 @@ export function fitOutline(
     const dy = (after.x - before.x) / length * half
     return { x1: here.x - dx, y1: here.y - dy, x2: here.x + dx, y2: here.y + dy }
   }
-  const lengthM = roundLengthM(wideM / 4)
+  const lengthM = roundLengthM(wideM / 4 / unitM) * unitM
   return { width, height, path: outlinePath(pathM.x.length, at), at, across, bar: { lengthM, size: lengthM * scale } }
 }
 

@@ -12,10 +12,10 @@ export interface SetupField {
   label: string
   /** With its place, for a list of changes: `Rear left spring`. */
   fullLabel: string
-  /** Unit in which it is shown; '' for words. */
+  /** Unit in which answers have it and metric sheets show it; '' for words. */
   unit: string
   group: SetupGroup
-  /** Stored figure divided by shown figure: 100 for pressures, which are kept in kPa and shown in bar. */
+  /** Stored figure divided by the figure in `unit`: 100 for pressures, which are kept in kPa. */
   scale: number
   /** Whether the figure may be below zero. */
   signed: boolean
@@ -81,16 +81,17 @@ export const SETUP_FIELDS: readonly SetupField[] = [
   single('car.ballastKg', 'Ballast', 'kg', 'car'),
 ]
 
-/** A setting in the unit in which it is shown; null where nothing was filled in. */
+/** A setting in the unit of its field; null where nothing was filled in. */
 export type SettingValue = number | string | null
 
-/** The value of a field of a sheet, in the unit in which it is shown. */
+/** The value of a field of a sheet, in the unit of the field. */
 export function settingOf(sheet: Sheet, field: Pick<SetupField, 'path' | 'scale'>): SettingValue {
   let value: unknown = sheet
   for (const key of field.path.split('.')) value = (value as Record<string, unknown> | undefined)?.[key]
   if (typeof value === 'string') return value === '' ? null : value
-  // 2.1 bar is kept as 210 kPa; the division must not show as 2.1000000000000001.
-  return typeof value === 'number' && Number.isFinite(value) ? Math.round(value / field.scale * 1e6) / 1e6 : null
+  // 2.1 bar is kept as 210 kPa; the division must not show as 2.1000000000000001. Fourteen digits are kept, since a
+  // figure that was typed in another unit is turned back from them.
+  return typeof value === 'number' && Number.isFinite(value) ? Number((value / field.scale).toPrecision(14)) : null
 }
 
 /** One thing that differs between two sheets. */

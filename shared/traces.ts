@@ -4,7 +4,13 @@ export const TRACE_GRID = { left: 46, right: 16, top: 22, bottom: 26 } as const
 /** Height of the two sizes of a trace, px; the same before and after the chart is there. */
 export const TRACE_HEIGHT = { tall: 268, low: 168 } as const
 
-/** One line of a trace. */
+/** Width of an A4 page between its margins, px of CSS: 210 mm less 14 mm on both sides, at 96 px an inch. */
+export const PAPER_WIDTH = 688
+
+/** Height of the two sizes on paper, px; the chart's style of print holds the same. */
+export const TRACE_PAPER_HEIGHT = { tall: 208, low: 132 } as const
+
+/** One line of a trace, in the units of its axes. */
 export interface TraceLine {
   points: [number, number | null][]
   /** A CSS colour, as a token. */
@@ -15,8 +21,8 @@ export interface TraceLine {
   wash?: string
 }
 
-/** An upright over a trace: where a braking begins. */
-export interface Upright { atM: number, dashed: boolean, label?: string }
+/** An upright over a trace: where a braking begins, in the unit of the axis. */
+export interface Upright { at: number, dashed: boolean, label?: string }
 
 /** Place of a share of the plot's width, as a CSS length. */
 export function traceLeft(share: number): string {

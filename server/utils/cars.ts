@@ -3,6 +3,7 @@ import { sheetSchema } from '../../shared/schemas/setups'
 import { sheetDifferences } from '../../shared/setup-fields'
 import type { Transaction } from './db/transactions'
 import { notFound } from './problems'
+import { versionOf, type Versioned } from './versions'
 
 interface SetupRow {
   id: string
@@ -54,7 +55,7 @@ function listItemOf(row: SetupRow, all: readonly SetupRow[]): SetupListItem {
 /** Cars of a team with their setup revisions, the newest first; or the one asked for. */
 export async function readCars(db: Transaction, teamId: string, id?: string): Promise<Car[]> {
   const cars = await db('cars').where('team_id', teamId).modify(query => id && query.where('id', id)).orderBy('name')
-    .select<(CarBody & { id: string, team_id: string })[]>()
+    .select<(CarBody & Versioned & { id: string, team_id: string })[]>()
   const setups = await setupRows(db).whereIn('r.car_id', cars.map(car => car.id))
   return cars.map(car => ({
     id: car.id,
@@ -64,6 +65,7 @@ export async function readCars(db: Transaction, teamId: string, id?: string): Pr
     year: car.year,
     kind: car.kind,
     notes: car.notes,
+    ...versionOf(car),
     setups: setups.filter(setup => setup.car_id === car.id).map((setup, _, own) => listItemOf(setup, own)),
   }))
 }

@@ -1,8 +1,9 @@
 import type { Circuit, Layout, LayoutBody, SavedLine } from '../../shared/schemas/circuits'
 import type { Transaction } from './db/transactions'
 import { notFound } from './problems'
+import { versionOf, type Versioned } from './versions'
 
-interface LayoutRow {
+interface LayoutRow extends Versioned {
   id: string
   team_id: string
   circuit_id: string
@@ -48,6 +49,7 @@ export async function readLayout(db: Transaction, layoutId: string): Promise<Lay
     direction: row.direction,
     lengthM: row.length_m,
     linesVersion: row.lines_version,
+    ...versionOf(row),
     lines: await readLines(db, layoutId),
   }
 }
@@ -56,7 +58,7 @@ export async function readLayout(db: Transaction, layoutId: string): Promise<Lay
 export async function readCircuits(db: Transaction, teamId: string, id?: string): Promise<Circuit[]> {
   const circuits = await db('circuits').where('team_id', teamId)
     .modify(query => id && query.where('id', id)).orderBy('name')
-    .select<{ id: string, team_id: string, name: string, time_zone: string, notes: string }[]>()
+    .select<(Versioned & { id: string, team_id: string, name: string, time_zone: string, notes: string })[]>()
   const layouts = await db('layouts').whereIn('circuit_id', circuits.map(circuit => circuit.id)).orderBy('name')
     .select<(LayoutRow & { line_count: number })[]>('*', db.raw(`(select count(*)::int from timing_lines t
       where t.team_id = layouts.team_id and t.layout_id = layouts.id) as line_count`))
@@ -66,11 +68,13 @@ export async function readCircuits(db: Transaction, teamId: string, id?: string)
     name: circuit.name,
     timeZone: circuit.time_zone,
     notes: circuit.notes,
+    ...versionOf(circuit),
     layouts: layouts.filter(layout => layout.circuit_id === circuit.id).map(layout => ({
       id: layout.id,
       name: layout.name,
       direction: layout.direction,
       lengthM: layout.length_m,
+      ...versionOf(layout),
       lineCount: layout.line_count,
     })),
   }))

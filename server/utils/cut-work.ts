@@ -4,6 +4,7 @@ import { asTeam, type Transaction } from './db/transactions'
 import type { Jobs } from './jobs'
 import type { LogPath } from './laps/lap'
 import { tellProgress } from './progress'
+import { markRepeats } from './repeats'
 
 /**
  * Lines have changed: every log driven on the layout is cut again from its stored channels. One that fails does not
@@ -31,6 +32,7 @@ async function cutAgain(teamId: string, partId: string, logId: string): Promise<
     if (!log || !part) return null
     const found = await cutPart(db, part, await readPath(db, teamId, logId, log.gaps))
     await db('logs').where('id', logId).update({ status: found })
+    await markRepeats(db, teamId, part.outing_id)
     return found
   })
   if (status) await tellProgress({ logId, status, step: null, fraction: 1 })

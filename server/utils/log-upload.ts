@@ -77,6 +77,12 @@ async function uploadProblem(error: unknown, sink: LogSink): Promise<unknown> {
   return sink.done.then(() => error, (reason: unknown) => reason)
 }
 
+/** Refuses an upload of which nothing was read yet, in a way that a browser can tell. */
+export async function refuseUpload(event: H3Event, reason: unknown): Promise<never> {
+  await drain(event)
+  throw reason
+}
+
 /** Reads on what a browser is still sending: it shows an answer only after it could send all, or nearly. */
 async function drain(event: H3Event): Promise<void> {
   const { req } = event.node

@@ -1,13 +1,15 @@
 import type { LogSummary, Outing, OutingBody, OutingSummary } from '../../shared/schemas/days'
 import { conditionsSchema, hotPressuresSchema } from '../../shared/schemas/days'
+import type { LogProblem } from '../../shared/schemas/logs'
 import type { Sheet } from '../../shared/schemas/setups'
 import { sheetDifferences } from '../../shared/setup-fields'
 import type { Transaction } from './db/transactions'
 import { readLaps } from './laps-of-outings'
-import { shownStatus } from './logs'
+import { countRows, shownStatus } from './logs'
 import { notFound } from './problems'
+import { versionOf, type Versioned } from './versions'
 
-interface OutingRow {
+interface OutingRow extends Versioned {
   id: string
   team_id: string
   day_id: string
@@ -35,6 +37,7 @@ interface LogRow extends Pick<LogSummary, 'id' | 'status' | 'problem'> {
   outing_id: string
   file_name: string
   size_bytes: number
+  problems: LogProblem[]
 }
 
 function outingRows(db: Transaction) {
@@ -52,7 +55,7 @@ function outingRows(db: Transaction) {
 
 async function readLogs(db: Transaction, outingIds: readonly string[]): Promise<LogRow[]> {
   return db('logs as g').join('log_parts as p', 'p.log_id', 'g.id').whereIn('p.outing_id', outingIds)
-    .orderBy('g.uploaded_at').select<LogRow[]>('p.outing_id', 'g.id', 'g.file_name', 'g.size_bytes', 'g.problem', shownStatus(db, 'g'))
+    .orderBy('g.uploaded_at').select<LogRow[]>('p.outing_id', 'g.id', 'g.file_name', 'g.size_bytes', 'g.problem', 'g.problems', shownStatus(db, 'g'))
 }
 
 /** Outings of a day in order, with laps, logs, and what was changed on the car since its outing before. */
@@ -92,6 +95,7 @@ function summaryOf(row: OutingRow, laps: OutingSummary['laps'], logs: LogRow[]):
     conditions: conditionsSchema.parse(row.conditions),
     hotPressures: hotPressuresSchema.parse(row.hot_pressures),
     notes: row.notes,
+    ...versionOf(row),
     laps,
     logs: logs.filter(log => log.outing_id === row.id).map(summaryOfLog),
   }
@@ -113,6 +117,7 @@ export function outingColumns(body: OutingBody) {
   }
 }
 
-function summaryOfLog({ id, file_name: fileName, size_bytes: sizeBytes, status, problem }: LogRow): LogSummary {
-  return { id, fileName, sizeBytes, status, problem }
+function summaryOfLog({ id, status, problem, ...row }: LogRow): LogSummary {
+  const rowProblems = countRows(row.problems)
+  return { id, fileName: row.file_name, sizeBytes: row.size_bytes, status, problem, rowProblems }
 }

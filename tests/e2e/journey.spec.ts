@@ -53,6 +53,8 @@ async function addCar(page: Page): Promise<void> {
   await page.getByLabel('Spring, rear left').fill('28')
   await page.getByRole('button', { name: /same as left/ }).last().click()
   await press(page, 'Sign the sheet')
+  // The sheet that is being written says the same: only its address tells that it was signed.
+  await page.waitForURL(/\/setups\/[0-9a-f-]{36}$/)
   // The left was typed, the right taken over with one touch.
   await heading(page, /fresh sheet, with 2 settings/)
 }

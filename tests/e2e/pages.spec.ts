@@ -8,6 +8,7 @@ interface Filled extends Garage { logId: string, lapIds: string[] }
 /** Every page, as a person of a team with one outing sees it. */
 const PAGES: Record<string, (of: Filled) => string> = {
   'days': () => '/days',
+  'the first steps': () => '/start',
   'a new day': () => '/days/new',
   'a day': of => `/days/${of.dayId}`,
   'a new outing': of => `/days/${of.dayId}/outings/new`,
@@ -29,7 +30,7 @@ const PAGES: Record<string, (of: Filled) => string> = {
 }
 
 /** The same for a team in which nothing has been entered yet. */
-const EMPTY = ['/days', '/compare', '/cars', '/circuits', '/days/new']
+const EMPTY = ['/days', '/start', '/compare', '/cars', '/circuits', '/days/new']
 const STRANGER = ['/', '/sign-in', '/register']
 
 let browser: Browser

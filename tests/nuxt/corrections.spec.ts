@@ -10,7 +10,7 @@ const FELL = { id: ID(1), name: 'Harrow Fell', timeZone: 'Europe/London', layout
 const MOOR = { id: ID(2), name: 'Tarn Moor' }
 
 function day(outings: Day['outings']): Day {
-  return { id: ID(5), teamId: ID(8), date: '2026-09-12', name: '', notes: 'Noise limit 98 dB', circuit: FELL, outings }
+  return { id: ID(5), teamId: ID(8), date: '2026-09-12', name: '', notes: 'Noise limit 98 dB', circuit: FELL, outings, version: 3, changedAt: '2026-09-12T08:00:00.000Z' }
 }
 
 describe('DayCorrection', () => {
@@ -41,7 +41,7 @@ describe('DayCorrection', () => {
     await page.get('[name=name]').setValue(' Autumn open day ')
     await page.get('form').trigger('submit')
     await vi.waitFor(() => expect(page.find('form').exists()).toBe(false))
-    expect(sent).toEqual([{ circuitId: MOOR.id, date: '2026-09-13', name: 'Autumn open day', notes: 'Noise limit 98 dB' }])
+    expect(sent).toEqual([{ circuitId: MOOR.id, date: '2026-09-13', name: 'Autumn open day', notes: 'Noise limit 98 dB', basedOnVersion: 3 }])
     expect(page.emitted('update:day')).toEqual([[expect.objectContaining({ name: 'kept' })]])
     page.unmount()
   })
@@ -71,7 +71,7 @@ describe('CircuitLayoutForm', () => {
     await page.get('[name=name]').setValue('Full, with chicane')
     await page.get('[name=direction]').setValue('anticlockwise')
     await page.get('form').trigger('submit')
-    await vi.waitFor(() => expect(save).toHaveBeenCalledExactlyOnceWith({ name: 'Full, with chicane', direction: 'anticlockwise' }))
+    await vi.waitFor(() => expect(save).toHaveBeenCalledExactlyOnceWith({ name: 'Full, with chicane', direction: 'anticlockwise' }, 0))
     page.unmount()
   })
 })

@@ -3,6 +3,7 @@ import { flushPromises } from '@vue/test-utils'
 import { readBody } from 'h3'
 import { beforeEach, describe, expect, it, vi } from 'vitest'
 import LapTable from '../../components/lap/LapTable.vue'
+import { FIRST_PREFERENCES } from '../../shared/schemas/people'
 import type { Lap } from '../../shared/schemas/days'
 import { useSessionStore } from '../../stores/session'
 
@@ -10,7 +11,7 @@ const ID = (n: number) => `01890000-0000-7000-8000-00000000000${n}`
 
 function lap(number: number, sectorsS: number[], more: Partial<Lap> = {}): Lap {
   const timeS = sectorsS.reduce((sum, sector) => sum + sector, 0)
-  return { id: ID(number), number, kind: 'timed', startS: 0, timeS, sectorsS, flags: [], excluded: false, excludedReason: '', ...more }
+  return { id: ID(number), number, logId: null, kind: 'timed', startS: 0, timeS, sectorsS, flags: [], excluded: false, excludedReason: '', ...more }
 }
 
 const LAPS = [
@@ -20,7 +21,7 @@ const LAPS = [
 
 function signIn(role: 'driver' | 'coach') {
   const team = { id: ID(8), name: 'Fell Road Garage', role }
-  useSessionStore().me = { id: ID(9), name: 'Nell Placeholder', email: 'nell@lapwright.example', teams: [team] }
+  useSessionStore().me = { id: ID(9), name: 'Nell Placeholder', email: 'nell@lapwright.example', preferences: FIRST_PREFERENCES, teams: [team] }
 }
 
 async function mount() {

@@ -3,11 +3,13 @@ import { beforeEach, describe, expect, it } from 'vitest'
 import { ACTIONS } from '../../shared/access'
 import type { Role } from '../../shared/schemas/common'
 import { useSessionStore } from '../../stores/session'
+import { FIRST_PREFERENCES } from '../../shared/schemas/people'
 
 const me = (role: Role) => ({
   id: '0199a000-0000-7000-8000-000000000001',
   name: 'Nell Marsh',
   email: 'nell@lapwright.example',
+  preferences: FIRST_PREFERENCES,
   teams: [{ id: '0199a000-0000-7000-8000-000000000002', name: 'Fell Garage', role }],
 })
 

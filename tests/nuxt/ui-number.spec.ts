@@ -40,7 +40,7 @@ describe('UiNumber', () => {
   })
 
   it('leaves what is being typed alone and tidies it afterwards', async () => {
-    const { input, text } = await mounted(null, { digits: 2 })
+    const { input, text } = await mounted(null, { quantity: 'pressure' })
     await input.setValue('1,8')
     expect(text()).toBe('1,8')
     await input.trigger('blur')
@@ -55,7 +55,7 @@ describe('UiNumber', () => {
   })
 
   it('shows a pressure kept in kPa in bar, without the dust of the conversion', async () => {
-    const { input, model, text } = await mounted(180, { scale: 100, digits: 2 })
+    const { input, model, text } = await mounted(180, { quantity: 'pressure' })
     expect(text()).toBe('1.80')
     await input.setValue('2.1')
     expect(model.value).toBe(210)
@@ -70,7 +70,7 @@ describe('UiNumber', () => {
   })
 
   it('steps with the arrow keys from where it stands', async () => {
-    const { input, model, text } = await mounted(-0.1, { step: 0.1 })
+    const { input, model, text } = await mounted(-0.1, { quantity: 'angle' })
     await input.trigger('keydown', { key: 'ArrowUp' })
     expect([model.value, text()]).toEqual([0, '0'])
     await input.trigger('keydown', { key: 'ArrowDown' })
@@ -79,7 +79,7 @@ describe('UiNumber', () => {
   })
 
   it('is tied to its label, unit, help and error', async () => {
-    const { wrapper, input } = await mounted(1, { unit: 'N/mm', help: 'per corner', error: 'between 1 and 1000 N/mm' })
+    const { wrapper, input } = await mounted(1, { quantity: 'springRate', help: 'per corner', error: 'between 1 and 1000 N/mm' })
     expect(wrapper.get('label').attributes('for')).toBe(input.attributes('id'))
     const ids = input.attributes('aria-describedby')!.split(' ')
     expect(ids.map(id => wrapper.get(`#${id}`).text())).toEqual(['N/mm', 'per corner', 'between 1 and 1000 N/mm'])

@@ -62,7 +62,7 @@ describe('useForm', () => {
     const { form, send } = await page(submit)
     form.values.name = '  Stiffer rear '
     await send()
-    expect(submit).toHaveBeenCalledExactlyOnceWith({ name: 'Stiffer rear', sheet: { springNpmm: null } })
+    expect(submit).toHaveBeenCalledExactlyOnceWith({ name: 'Stiffer rear', sheet: { springNpmm: null } }, 0)
     expect(form.dirty.value).toBe(false)
   })
 

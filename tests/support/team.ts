@@ -5,6 +5,7 @@ import type { Layout, SavedLine } from '../../shared/schemas/circuits'
 import type { Log, Outing } from '../../shared/schemas/days'
 import type { Me } from '../../shared/schemas/people'
 import { emptySheet } from '../../shared/schemas/setups'
+import type { NewToken } from '../../shared/schemas/tokens'
 import { makeClient, type Client } from '../../seeds/client'
 import { uploadLog } from '../../seeds/upload'
 
@@ -27,6 +28,11 @@ export async function register(name = 'Nell Placeholder'): Promise<Registered> {
   const email = `${randomUUID()}@lapwright.example`
   const me = await client.must<Me>('POST', '/api/register', { name, email, password: PASSWORD, teamName: `Team of ${name}` })
   return { client, me, teamId: me.teams[0]!.id, email }
+}
+
+/** A token of this person, as the account page makes one. */
+export function makeToken({ client }: Registered, name = 'a program'): Promise<NewToken> {
+  return client.must<NewToken>('POST', '/api/tokens', { name, expiresInDays: 30, password: PASSWORD })
 }
 
 export interface Garage extends Registered {

@@ -27,6 +27,14 @@ describe('the house', () => {
     expect(foreign).toEqual([])
   })
 
+  it('writes every figure of a screen through useFigures, in the reader’s units and language', () => {
+    const past = /\btoLocale\w+\(|Intl\.NumberFormat|\}\}? ?(?:m|km\/h|mph|bar|psi|°C|°F|N\/mm)[<`,. ]/
+    expect(past.test('<td>{{ row.atM }} m</td>') && past.test('`${Math.round(speed)} km/h`')).toBe(true)
+    const found = ['pages', 'components', 'layouts', 'composables'].flatMap(sources).flatMap(file =>
+      readFileSync(root + file, 'utf8').split('\n').filter(line => past.test(line)).map(line => `${file}: ${line.trim()}`))
+    expect(found).toEqual([])
+  })
+
   it('names no path of a machine', () => {
     const named = ['server', 'shared', 'scripts', 'seeds', 'migrations', 'pages', 'components', 'composables', 'tests/api', 'tests/e2e', 'tests/support']
       .flatMap(sources).filter(file => /\/(?:work|root|home)\/[a-z]/.test(readFileSync(root + file, 'utf8')))

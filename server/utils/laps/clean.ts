@@ -49,7 +49,8 @@ export function cleanLog(read: ReadLog): CleanLog {
   const usable = last - first + 1
   if (usable < FEWEST_SAMPLES) {
     const needed = `at least ${FEWEST_SAMPLES} are needed`
-    throw new LapsError('too_short', `Only ${usable} rows have both a time and a position; ${needed}.`, lines[first])
+    const rows = usable === 1 ? '1 row has' : `${usable} rows have`
+    throw new LapsError('too_short', `Only ${rows} both a time and a position; ${needed}.`, lines[first])
   }
   refuseWildPositions(track, good, lines[first]!)
   reportEnds(lines, first, last, problems)

@@ -32,6 +32,14 @@ describe('lapTable', () => {
     expect(table.rows.map(row => row.notes)).toEqual([[], [], [], ['cut corner 2'], ['missed a sector line'], []])
   })
 
+  it('says from which log a lap is, when there is more than one', () => {
+    const logs = [{ id: 'a', fileName: 'first.csv' }, { id: 'b', fileName: 'second.csv' }]
+    const of = (...laps: Lap[]) => lapTable(laps, logs).rows.map(row => row.notes)
+    expect(of(lap(1, [90], { logId: 'a' }), lap(2, [91], { logId: 'a' }))).toEqual([[], []])
+    expect(of(lap(1, [90], { logId: 'a' }), lap(1, [89.9], { logId: 'b', flags: ['repeated'] })))
+      .toEqual([['from first.csv'], ['from second.csv', 'the log added first counts']])
+  })
+
   it('takes differences from the shown times', () => {
     expect(table.rows.map(row => row.behindS)).toEqual([null, 0.4, null, 0.2, 0.2, null])
     // 90.0006 and 90.0004 are shown as 90.001 and 90.000.

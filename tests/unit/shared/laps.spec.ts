@@ -39,6 +39,12 @@ describe('lapStandings', () => {
     expect(lapStandings([lap(90, { flags: ['missed_sector'], sectorsS: [null, null, 31] })])).toEqual(['counted'])
   })
 
+  it('leave out what a log added earlier has already, even where it was the fastest', () => {
+    const laps = [lap(90), lap(89, { flags: ['repeated'] }), lap(91, { flags: ['gap_at_line', 'repeated'] }), lap(96)]
+    expect(lapStandings(laps)).toEqual(['counted', 'repeated', 'repeated', 'counted'])
+    expect(leftOutReason(laps[1]!, 'repeated')).toBe('the log added first counts')
+  })
+
   it('has nothing to say of no laps', () => {
     expect(lapStandings([])).toEqual([])
     expect(bestLap([])).toBeNull()

@@ -1,5 +1,8 @@
 import { describe, expect, it } from 'vitest'
-import { isUnderWay, problemWords, progressWords, rowWords, STATUS_WORDS, stepStates, withNews } from '../../../shared/log-words'
+import {
+  isUnderWay, overlapWords, problemWords, progressWords, rowProblemWords, rowWords, STATUS_WORDS, stepStates, withNews,
+} from '../../../shared/log-words'
+import type { Lap } from '../../../shared/schemas/days'
 import { LOG_STATUSES, LOG_STEPS } from '../../../shared/schemas/logs'
 
 describe('words about a log', () => {
@@ -33,6 +36,27 @@ describe('words about a log', () => {
 
   it('tells logs that move by themselves from those that wait for a person', () => {
     expect(LOG_STATUSES.filter(isUnderWay)).toEqual(['uploading', 'queued', 'processing'])
+  })
+
+  it('says of a log whose worker was lost that it begins again, and shows no bar that stands', () => {
+    const again = { logId: 'a', status: 'queued' as const, step: null, fraction: 0, restarted: true }
+    expect(withNews({ logId: 'a', status: 'processing', step: 'cut', fraction: 0.8 }, again)).toEqual(again)
+    expect(progressWords(again)).toBe('The worker was lost; the reading begins again by itself')
+    expect(progressWords({ ...again, status: 'processing', step: 'read', fraction: 0.1 })).toBe('Reading the rows, 10 %')
+  })
+
+  it('says that there were problems in rows, and nothing where there were none', () => {
+    expect(rowProblemWords({ rowProblems: 0 }, '0')).toBe('')
+    expect(rowProblemWords({ rowProblems: 1 }, '1')).toBe('Something was wrong in 1 row.')
+    expect(rowProblemWords({ rowProblems: 1339 }, '1,339')).toBe('Something was wrong in 1,339 rows.')
+  })
+
+  it('names the logs whose laps do not count beside those of an earlier one', () => {
+    const logs = [{ id: 'a', fileName: 'first.csv' }, { id: 'b', fileName: 'second.csv' }]
+    const lap = (logId: string, ...flags: string[]) => ({ logId, flags }) as unknown as Lap
+    expect(overlapWords([lap('a'), lap('b')], logs)).toBe('')
+    expect(overlapWords([lap('a'), lap('b', 'repeated')], logs)).toMatch(/^1 lap of second\.csv does not count: /)
+    expect(overlapWords([lap('b', 'repeated'), lap('b', 'repeated')], logs)).toMatch(/^2 laps of second\.csv do not count: /)
   })
 
   it('writes the rows of a problem', () => {
