@@ -1,4 +1,4 @@
-import { Ajv2020 } from 'ajv/dist/2020.js'
+import { Ajv2020, type ErrorObject } from 'ajv/dist/2020.js'
 import addFormats from 'ajv-formats'
 import { makeClient } from '../../seeds/client'
 import { baseUrl } from './team'
@@ -32,5 +32,5 @@ export function differences({ responses }: Operation, { status, body }: { status
   const schema = promised.content?.['application/json']?.schema
   if (!schema) return promised.content || body === '' ? [] : ['there is a body, and none is described']
   const fits = ajv.compile(schema)
-  return fits(body) ? [] : fits.errors!.map(error => `${error.instancePath} ${error.message} ${JSON.stringify(error.params)}`)
+  return fits(body) ? [] : fits.errors!.map((error: ErrorObject) => `${error.instancePath} ${error.message} ${JSON.stringify(error.params)}`)
 }

@@ -76,13 +76,18 @@ function example(schema: Schema, name: string, known: Known): unknown {
   return 'abcdefghij'
 }
 
-/** Every node of a value, with the schema that describes it. */
+/** So deep and so far along a list are nodes looked for: what a mutation blew up is not mutated leaf by leaf. */
+const DEEPEST = 12
+const FURTHEST = 3
+
+/** The nodes of a value, with the schema that describes each. */
 function placesOf(value: unknown, schema: Schema, keys: Place['keys'] = []): Place[] {
   const here = { keys, schema }
-  if (typeof value !== 'object' || value === null) return [here]
+  if (typeof value !== 'object' || value === null || keys.length > DEEPEST) return [here]
   const within = (key: string) => [schema, ...schema.anyOf ?? [], ...schema.oneOf ?? []]
     .map(each => Array.isArray(value) ? each.items : each.properties?.[key]).find(Boolean) ?? {}
-  return [here, ...Object.entries(value).flatMap(([key, each]) =>
+  const entries = Object.entries(Array.isArray(value) ? value.slice(0, FURTHEST) : value) as [string, unknown][]
+  return [here, ...entries.flatMap(([key, each]) =>
     placesOf(each, within(key), [...keys, Array.isArray(value) ? Number(key) : key]))]
 }
 
