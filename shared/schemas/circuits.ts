@@ -32,10 +32,13 @@ export const layoutBody = z.object({
 export type LayoutBody = z.infer<typeof layoutBody>
 export const layoutChange = layoutBody.extend(basedOn)
 
-const pointSchema = z.object({
-  latitudeDeg: z.number().min(-90).max(90),
-  longitudeDeg: z.number().min(-180).max(180),
-})
+/** Nothing more is asked of a line whose ends are no places on earth: its length could not be told. */
+function degreesUpTo(most: number) {
+  const rule = { error: `between \u2212${most}° and ${most}°`, abort: true }
+  return z.number().min(-most, rule).max(most, rule)
+}
+
+const pointSchema = z.object({ latitudeDeg: degreesUpTo(90), longitudeDeg: degreesUpTo(180) })
 
 /** No track is this wide; a longer line would cut half the circuit. */
 const LONGEST_LINE_M = 1000

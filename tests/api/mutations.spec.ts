@@ -93,10 +93,14 @@ const LINES = [
   { kind: 'sector', ordinal: 1, a: point(54.40629244, -2.916828672), b: point(54.406186057, -2.917037438) },
 ]
 
+function asText(value: unknown): string {
+  return (typeof value === 'string' ? value : JSON.stringify(value) ?? '').toWellFormed()
+}
+
 /** Text for an address; what a browser would never send as it is, is sent as it is. */
 function inAddress(value: unknown): string {
-  const text = typeof value === 'string' ? value : JSON.stringify(value) ?? ''
-  return text === '%00' ? text : encodeURIComponent(text.toWellFormed().slice(0, 4000))
+  const text = asText(value)
+  return text === '%00' ? text : encodeURIComponent(text.slice(0, 4000).toWellFormed())
 }
 
 function addressOf(path: string, request: Request): string {
@@ -108,7 +112,7 @@ function addressOf(path: string, request: Request): string {
 function bodyOf({ body, form }: Request): { body?: string | FormData, type?: string } {
   if (form) {
     const sent = new FormData()
-    sent.append(String(form.part).toWellFormed(), new Blob([String(form.text)]), String(form.fileName).toWellFormed())
+    sent.append(asText(form.part), new Blob([asText(form.text)]), asText(form.fileName))
     return { body: sent }
   }
   const text = JSON.stringify(body)
