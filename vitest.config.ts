@@ -39,10 +39,10 @@ async function projects(): Promise<TestProjectConfiguration[]> {
     },
     {
       resolve: { alias },
-      // One browser at a time: journeys are measured in what a person would wait for.
+      // Two browsers at a time, as many as the machines have processors.
       test: {
         name: 'e2e', include: ['tests/e2e/**/*.spec.ts'], environment: 'node', env,
-        fileParallelism: false, testTimeout: 180_000, hookTimeout: 60_000,
+        maxWorkers: 2, testTimeout: 180_000, hookTimeout: 120_000,
       },
     },
     ...(wantsNuxt() ? [await nuxtProject()] : []),

@@ -2,12 +2,10 @@
 import { rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { needChromium } from './chromium.mjs'
-import { ensureDemo } from './demo.mjs'
 import { clearGround, groundFor, makeGround, removeBuild, serveGround } from './ground.mjs'
 import { lastWords } from './last-words.mjs'
 import { ensurePackages, requireRoom } from './packages.mjs'
 import { shown } from './places.mjs'
-import { clusterAt } from './postgres.mjs'
 import { takeLock } from './processes.mjs'
 import { fail, say } from './say.mjs'
 import { runScript } from './services.mjs'
@@ -24,11 +22,13 @@ export async function pictures() {
     await needChromium('Chromium is needed to make pictures', places.log)
     const env = await serveGround(ground)
     rmSync(places.demo, { force: true })
-    await ensureDemo(places, env, await clusterAt(places.cluster))
-    say('Making the pictures ...')
+    const own = { ...env, LAPWRIGHT_URL: env.LAPWRIGHT_TEST_URL, LAPWRIGHT_DEMO_FILE: places.demo }
     const log = join(places.log, 'pictures.log')
-    const { code, all } = await runScript('take-pictures.ts', { ...env, LAPWRIGHT_DEMO_FILE: places.demo }, log)
-    if (code !== 0) fail(`The pictures could not be made: ${lastWords(all)} (see ${shown(log)}).`)
+    for (const script of ['seed.ts', 'take-pictures.ts']) {
+      say(script === 'seed.ts' ? 'Filling in the demonstration team ...' : 'Taking the pictures ...')
+      const { code, all } = await runScript(script, own, log)
+      if (code !== 0) fail(`The pictures could not be made: ${lastWords(all)} (see ${shown(log)}).`)
+    }
   }
   finally {
     await clearGround(ground)

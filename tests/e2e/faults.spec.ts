@@ -35,9 +35,9 @@ async function signInElsewhere(context: BrowserContext, page: Page, email: strin
   const opened = context.waitForEvent('page')
   await page.getByRole('alert').getByRole('link').click()
   const tab = await opened
+  await tab.waitForLoadState('networkidle')
   await tab.getByLabel('E-mail address').fill(email)
   await tab.getByLabel('Password').fill(PASSWORD)
-  await tab.waitForLoadState('networkidle')
   await press(tab, 'Sign in')
   await tab.waitForURL(url => !url.pathname.startsWith('/sign-in'))
   await tab.close()
