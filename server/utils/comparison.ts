@@ -6,6 +6,7 @@ import { compareLaps, type ComparedLap, type LapTrace } from './laps/compare'
 import { readChannels } from './channels'
 import type { Transaction } from './db/transactions'
 import { notFound, ProblemError } from './problems'
+import { keepRecent } from './recent'
 
 /** Stations are this far apart: a tenth of a second at 70 km/h, finer than ordinary receivers tell. */
 const STEP_M = 2
@@ -26,6 +27,8 @@ interface LapRow {
   excluded: boolean
   sectors: (number | null)[] | null
   log_id: string | null
+  /** Changes with every change of the log's row, and a log that is read again changes it. */
+  log_version: string | null
   rate_hz: number | null
   outing_id: string
   outing_number: number
@@ -58,7 +61,7 @@ async function readLapRow(db: Transaction, id: string): Promise<LapRow> {
     .where('l.id', id).first<LapRow | undefined>(
       'l.id', 'l.team_id', 'l.number', 'l.kind', 'l.start_s', 'l.time_s', 'l.first_sample', 'l.last_sample', 'l.flags', 'l.excluded',
       db.raw('(select array_agg(t.time_s order by t.ordinal) from lap_sectors t where t.team_id = l.team_id and t.lap_id = l.id) as sectors'),
-      'g.id as log_id', 'g.rate_hz', 'o.id as outing_id', 'o.number as outing_number', 'o.started_at', 'o.fuel_start_l', 'o.passenger', 'o.conditions',
+      'g.id as log_id', db.raw('g.xmin::text as log_version'), 'g.rate_hz', 'o.id as outing_id', 'o.number as outing_number', 'o.started_at', 'o.fuel_start_l', 'o.passenger', 'o.conditions',
       'o.hot_pressures', 'd.id as day_id', 'd.date', 'c.time_zone', 'y.id as layout_id', 'y.name as layout_name', 'c.name as circuit_name',
       'r.id as car_id', 'r.name as car_name', 's.id as setup_id', 's.number as setup_number', 's.name as setup_name', 's.sheet',
       'u.id as driver_id', 'u.name as driver_name',
@@ -88,6 +91,18 @@ async function readTrace(db: Transaction, lap: LapRow): Promise<LapTrace> {
   }
 }
 
+type Series = Pick<ComparedLapBody, 'speed' | 'longitudinal' | 'lateral' | 'source' | 'brakings'>
+type Drawn = Pick<Comparison, 'stationM' | 'pathM' | 'differenceS' | 'sectorLinesM'> & { lap: Series, against: Series }
+
+/** What is drawn of two laps costs most of a comparison, and people come back to the same two. */
+const recentlyDrawn = keepRecent<Drawn>(64)
+
+/** Whatever the drawing of a lap rests on: its cut, and the version of the log whose channels it reads. */
+function stampOf(lap: LapRow) {
+  const { id, log_id, log_version, start_s, time_s, first_sample, last_sample, sectors } = lap
+  return [id, log_id, log_version, start_s, time_s, first_sample, last_sample, sectors]
+}
+
 /** Two timed laps of a layout held against each other by station, with what differed on the car. */
 export async function readComparison(db: Transaction, lapId: string, againstId: string): Promise<Comparison> {
   const lap = await readLapRow(db, lapId)
@@ -95,23 +110,33 @@ export async function readComparison(db: Transaction, lapId: string, againstId: 
   if (lap.team_id !== against.team_id || lap.layout_id !== against.layout_id) {
     throw new ProblemError(422, 'Not the same way round', 'The two laps were driven on different layouts, so there is nothing to hold them against each other by.')
   }
-  const compared = compareLaps(await readTrace(db, lap), await readTrace(db, against), { stepM: STEP_M })
-  const faster = compared.reference === 'a' ? { row: lap, own: compared.a } : { row: against, own: compared.b }
+  const key = JSON.stringify([stampOf(lap), stampOf(against)])
+  const drawn = await recentlyDrawn(key, () => draw(db, lap, against))
   return {
     teamId: lap.team_id,
-    stationM: rounded(compared.stationM, 3).map(Number),
-    pathM: { x: rounded(faster.own.xM, 2).map(Number), y: rounded(faster.own.yM, 2).map(Number) },
-    lap: lapBody(lap, compared.a),
-    against: lapBody(against, compared.b),
-    differenceS: rounded(compared.differenceS, 4),
-    sectorLinesM: sectorLines(faster.row, faster.own, compared.stationM),
+    ...drawn,
+    lap: { ...lapBody(lap), ...drawn.lap },
+    against: { ...lapBody(against), ...drawn.against },
     setupDifferences: sheetDifferences(against.sheet, lap.sheet)
       .map(({ label, unit, a, b }) => ({ label, unit, lap: b, against: a })),
     sameSettings: countSameSettings(lap.sheet, against.sheet),
   }
 }
 
-function lapBody(row: LapRow, compared: ComparedLap): ComparedLapBody {
+async function draw(db: Transaction, lap: LapRow, against: LapRow): Promise<Drawn> {
+  const compared = compareLaps(await readTrace(db, lap), await readTrace(db, against), { stepM: STEP_M })
+  const faster = compared.reference === 'a' ? { row: lap, own: compared.a } : { row: against, own: compared.b }
+  return {
+    stationM: rounded(compared.stationM, 3).map(Number),
+    pathM: { x: rounded(faster.own.xM, 2).map(Number), y: rounded(faster.own.yM, 2).map(Number) },
+    differenceS: rounded(compared.differenceS, 4),
+    sectorLinesM: sectorLines(faster.row, faster.own, compared.stationM),
+    lap: seriesOf(compared.a),
+    against: seriesOf(compared.b),
+  }
+}
+
+function lapBody(row: LapRow): Omit<ComparedLapBody, keyof Series> {
   return {
     id: row.id,
     number: row.number,
@@ -130,6 +155,11 @@ function lapBody(row: LapRow, compared: ComparedLap): ComparedLapBody {
     hotPressures: hotPressuresSchema.parse(row.hot_pressures),
     sectorsS: row.sectors ?? [],
     rateHz: row.rate_hz ?? 0,
+  }
+}
+
+function seriesOf(compared: ComparedLap): Series {
+  return {
     speed: rounded(compared.speedMps, 3),
     longitudinal: rounded(compared.longitudinalMps2, 3),
     lateral: rounded(compared.lateralMps2, 3),
